@@ -147,8 +147,7 @@ CREATE TABLE "libraries" (
 	"sha256" text NOT NULL,
 	"content" "bytea" NOT NULL,
 	"entry_count" integer NOT NULL,
-	"made_at" timestamp with time zone DEFAULT clock_timestamp() NOT NULL,
-	CONSTRAINT "libraries_sha256_unique" UNIQUE("sha256")
+	"made_at" timestamp with time zone DEFAULT clock_timestamp() NOT NULL
 );
 --> statement-breakpoint
 CREATE TABLE "method_runs" (
@@ -689,6 +688,7 @@ CREATE UNIQUE INDEX "tolerance_sets_version" ON "tolerance_sets" USING btree ("n
 CREATE UNIQUE INDEX "approved_sources_one_open" ON "approved_sources" USING btree ("material_id","supplier_id","manufacturer_id") WHERE "approved_sources"."withdrawn_at" is null;--> statement-breakpoint
 CREATE INDEX "reference_spectra_material" ON "reference_spectra" USING btree ("material_id","status");--> statement-breakpoint
 CREATE UNIQUE INDEX "reference_spectra_file_once" ON "reference_spectra" USING btree ("material_id","raw_file_id");--> statement-breakpoint
+CREATE INDEX "libraries_made" ON "libraries" USING btree ("made_at");--> statement-breakpoint
 CREATE INDEX "method_runs_version" ON "method_runs" USING btree ("method_version_id","created_at");--> statement-breakpoint
 CREATE INDEX "mvr_reference" ON "method_version_references" USING btree ("reference_id");--> statement-breakpoint
 CREATE UNIQUE INDEX "method_versions_number" ON "method_versions" USING btree ("method_id","version");--> statement-breakpoint

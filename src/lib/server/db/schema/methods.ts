@@ -75,15 +75,24 @@ export const methodVersionReferences = pgTable(
   (t) => [primaryKey({ columns: [t.methodVersionId, t.referenceId] }), index('mvr_reference').on(t.referenceId)]
 );
 
-/** All approved materials' representative spectra at one time; content-addressed, append-only. */
-export const libraries = pgTable('libraries', {
-  id: idKey(),
-  sha256: text().notNull().unique(),
-  /** Packed entries (identity/library.ts). */
-  content: bytea().notNull(),
-  entryCount: integer().notNull(),
-  madeAt: instant().notNull().default(sql`clock_timestamp()`)
-});
+/**
+ * All approved materials' representative spectra at one time; append-only. A row is added whenever the
+ * content changes, so the newest is the current one and a decision's own is always there for its replay.
+ */
+export const libraries = pgTable(
+  'libraries',
+  {
+    id: idKey(),
+    sha256: text().notNull(),
+    /** Packed entries (identity/library.ts). */
+    content: bytea().notNull(),
+    entryCount: integer().notNull(),
+    madeAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
+  },
+  (t) => [index('libraries_made').on(t.madeAt)]
+);
 
 /** A queued long run over a method version (validation, impact): progress and evidence. */
 export const methodRuns = pgTable(
