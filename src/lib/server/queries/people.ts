@@ -1,0 +1,42 @@
+import { and, asc, desc, eq, isNull, sql } from 'drizzle-orm';
+import type { RoleId } from '../../domain/roles';
+import type { Executor } from '../db/client';
+import { outboxMails, roleGrants, sessions, sites, users } from '../db/schema';
+
+export async function getSite(db: Executor, id: string) {
+  const [row] = await db.select().from(sites).where(eq(sites.id, id));
+  return row ?? null;
+}
+
+/** Accounts of the site with their open roles and live sessions. */
+export async function listPeople(db: Executor, siteId: string) {
+  return db
+    .select({
+      id: users.id,
+      userName: users.userName,
+      printedName: users.printedName,
+      email: users.email,
+      status: users.status,
+      proofedAt: users.proofedAt,
+      roles: sql<RoleId[]>`coalesce((select array_agg(g.role order by g.role) from ${roleGrants} g where g.user_id = ${users.id} and g.ended_at is null), '{}')`,
+      sessions: sql<number>`(select count(*)::int from ${sessions} s where s.user_id = ${users.id} and s.revoked_at is null and s.expires_at > clock_timestamp())`,
+      lastSeenAt: sql<Date | null>`(select max(s.last_seen_at) from ${sessions} s where s.user_id = ${users.id})`.mapWith((value: string | null) => (value === null ? null : new Date(value)))
+    })
+    .from(users)
+    .where(eq(users.siteId, siteId))
+    .orderBy(asc(users.userName));
+}
+
+/** Mail that was sent, waits or failed, newest first. */
+export async function listMails(db: Executor, limit = 100) {
+  return db.select().from(outboxMails).orderBy(desc(outboxMails.createdAt)).limit(limit);
+}
+
+/** A person's own live sessions. */
+export async function listSessions(db: Executor, userId: string) {
+  return db
+    .select()
+    .from(sessions)
+    .where(and(eq(sessions.userId, userId), isNull(sessions.revokedAt)))
+    .orderBy(desc(sessions.lastSeenAt));
+}
