@@ -1,16 +1,20 @@
+import { randomBytes } from 'node:crypto';
 import { eq, inArray } from 'drizzle-orm';
 import { canonicalJson } from '../../identity/canonicalJson';
+import { verificationCode } from '../../domain/certificate';
 import { PAPER_KINDS, type DispositionOutcome } from '../../domain/lots';
 import { done, refuse, type Outcome } from '../../domain/refusals';
-import { can } from '../../domain/roles';
+import { actingRole, can } from '../../domain/roles';
 import type { Database, Transaction } from '../db/client';
 import { containers, dispositions, limitTests, lotPapers, lots } from '../db/schema';
 import { transact } from '../db/transaction';
 import type { Act } from '../platform/act';
 import { issueCertificate } from '../platform/certificate/issue';
+import { nextNumber } from '../platform/numberSeries';
 import { keepRawFile, type IncomingFile } from '../platform/rawFiles';
 import { proveIdentity, sign, type SignatureProof } from '../platform/signing';
 import { recordTrail } from '../platform/trail';
+import { getCertificateData } from '../queries/certificateData';
 import { getLot, getReleaseConditions, type LotDetail } from '../queries/lots';
 
 export interface DispositionInput {
@@ -21,6 +25,8 @@ export interface DispositionInput {
   readonly oneTimeCode?: string;
   /** Hash of the record the signer saw; a record changed since then is refused. */
   readonly seenSha256: string;
+  /** Public address of this installation, for the certificate's verification code. */
+  readonly origin: string;
 }
 
 /** What is signed at a disposition: the lot with every attempt, as canonical JSON. */
@@ -115,7 +121,16 @@ async function writeDisposition(tx: Transaction, act: Act, detail: LotDetail, in
     reason: input.reason.trim()
   });
   if (input.outcome === 'reject') return { certificateId: null };
-  const certificate = await issueCertificate(tx, act, detail.lot.id, disposition.id);
+  const data = await getCertificateData(tx, {
+    detail,
+    number: await nextNumber(tx, 'C'),
+    code: verificationCode(randomBytes(16)),
+    origin: input.origin,
+    outcome: input.outcome,
+    reason: input.reason.trim(),
+    signature: { ...signature, role: actingRole(act.actor, 'lot.release') ?? '', meaning }
+  });
+  const certificate = await issueCertificate(tx, data, { lotId: detail.lot.id, dispositionId: disposition.id });
   await recordTrail(tx, act, {
     action: 'certificate.issue',
     recordType: 'certificate',

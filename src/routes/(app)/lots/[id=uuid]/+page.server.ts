@@ -39,7 +39,8 @@ async function dispose(event: Parameters<Actions[string]>[0], outcome: 'release'
     reason,
     password: String(form.get('password') ?? ''),
     oneTimeCode: text(form, 'oneTimeCode') || undefined,
-    seenSha256: text(form, 'recordSha256')
+    seenSha256: text(form, 'recordSha256'),
+    origin: event.url.origin
   });
   if (!result.ok) return formFailure(result, { reason, outcome });
   return { decided: outcome, certificateId: result.value.certificateId };
