@@ -11,7 +11,8 @@ import { dot } from './dotProducts';
  * @throws RangeError when the lengths differ.
  */
 export function correlation(a: Float64Array, b: Float64Array): number {
-  if (a.length !== b.length) throw new RangeError(`correlation: lengths differ (${a.length} and ${b.length})`);
+  if (a.length !== b.length)
+    throw new RangeError(`correlation: lengths differ (${a.length} and ${b.length})`);
   const unitA = centredUnit(a);
   const unitB = centredUnit(b);
   return unitA === null || unitB === null ? 0 : withinUnit(dot(unitA, unitB));

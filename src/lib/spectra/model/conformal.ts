@@ -24,7 +24,11 @@ export function conformalP(heldOut: ArrayLike<number>, score: number): number {
  * How strange a spectrum is to a class model: the larger of its two distances, each in units of its limit.
  * Above 1 it is outside one limit or the other.
  */
-export function nonconformity(t2: number, q: number, limits: { readonly t2: number; readonly q: number }): number {
+export function nonconformity(
+  t2: number,
+  q: number,
+  limits: { readonly t2: number; readonly q: number }
+): number {
   const score = limits.t2 > 0 ? t2 / limits.t2 : 0;
   const residual = limits.q > 0 ? q / limits.q : 0;
   return Math.max(score, residual);

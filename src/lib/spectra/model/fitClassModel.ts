@@ -1,12 +1,12 @@
-import type { ClassLimits, ClassModel } from './classModel';
+import { chooseLimits, limitCautions } from './chooseLimits';
+import type { ClassModel } from './classModel';
 import { nonconformity } from './conformal';
-import { classicalMoments, scaledChiSquaredLimit } from './dataDriven';
-import { leaveOneOut, leaveSourceOut, type HeldOutDistances } from './leaveOneOut';
-import { assertSignificance, jacksonMudholkarLimit, t2Limit } from './limits';
+import { foldsBySource, leaveOneOut, leaveSourceOut, type HeldOutDistances } from './leaveOneOut';
+import { assertSignificance } from './limits';
 import { pca } from './pca';
 
 export interface ClassModelOptions {
-  /** Components wanted; fewer are kept when the references do not carry as many. At least 1. */
+  /** Components wanted, at least 1; fewer are kept when the references do not carry as many. */
   readonly components: number;
   /** Significance of both limits, e.g. 0.01. */
   readonly significance: number;
@@ -16,7 +16,10 @@ export interface ClassModelOptions {
 
 export interface FittedClass {
   readonly model: ClassModel;
-  /** Distances of each reference under the model fitted without its source, in row order. */
+  /**
+   * Distances of each reference under a model fitted without its source, in row order; without the reference
+   * alone where all share one source or too little would stay.
+   */
   readonly heldOut: HeldOutDistances;
   /** `nonconformity` of the held-out references, ascending: what a conformal p-value is taken from. */
   readonly heldOutNonconformity: readonly number[];
@@ -24,32 +27,35 @@ export interface FittedClass {
   readonly cautions: readonly string[];
 }
 
-/** From this many references on, the theoretical limits are used; below, those drawn from held-out data. */
-const LARGE_SET = 30;
-
 /**
  * Fits the class model of one material and sets its limits.
- * @param rows references after the recipe: at least 3, equal length
+ * @param rows references after the recipe: at least 4, equal length
  * @throws RangeError when there are too few, lengths differ, or all are the same spectrum
  */
 export function fitClassModel(rows: readonly Float64Array[], options: ClassModelOptions): FittedClass {
   assertSignificance(options.significance);
-  if (rows.length < 3) throw new RangeError(`A class model needs at least 3 references; there are ${rows.length}.`);
+  const n = rows.length;
+  if (n < 4) throw new RangeError(`A class model needs at least 4 references; there are ${n}.`);
   const wanted = Math.max(1, Math.floor(options.components));
-  const fit = pca(rows, Math.min(wanted, rows.length - 2));
-  const kept = fit.loadings.length;
-  if (kept === 0) throw new RangeError('All references are the same spectrum: there is no spread to model.');
   const sources = options.sources ?? rows.map((_, i) => String(i));
-  const sourceCount = new Set(sources).size;
-  const heldOut = sourceCount >= 2 ? leaveSourceOut(fit, sources, kept) : leaveOneOut(fit, kept);
-  const residual = fit.eigenvalues.subarray(kept);
-  const limits = chooseLimits(rows.length, kept, residual, heldOut, options.significance);
+  const folds = foldsBySource(sources, n);
+  const largest = Math.max(...folds.map((fold) => fold.length));
+  // A held-out fold must leave at least 3 spectra, or its model has no spread to judge by.
+  const bySource = n - largest >= 3;
+  const fit = pca(rows, Math.min(wanted, bySource ? n - largest - 2 : n - 3));
+  // One direction of spread at least must stay outside the model, for Q to have something to measure.
+  const kept = Math.min(fit.loadings.length, fit.eigenvalues.length - 1);
+  if (kept < 1) throw new RangeError('The references are too alike: they show no spread to model.');
+  const heldOut = bySource ? leaveSourceOut(fit, sources, kept) : leaveOneOut(fit, kept);
+  const residualEigenvalues = Array.from(fit.eigenvalues.subarray(kept));
+  const evidence = { n, sourceCount: folds.length, components: kept, residualEigenvalues, heldOut };
+  const limits = chooseLimits(evidence, options.significance);
   const model: ClassModel = {
     mean: Array.from(fit.mean),
-    loadings: fit.loadings.map((loading) => Array.from(loading)),
+    loadings: fit.loadings.slice(0, kept).map((loading) => Array.from(loading)),
     eigenvalues: Array.from(fit.eigenvalues.subarray(0, kept)),
-    residualEigenvalues: Array.from(residual),
-    n: rows.length,
+    residualEigenvalues,
+    n,
     limits
   };
   const scores = Array.from(heldOut.t2, (t2, i) => nonconformity(t2, heldOut.q[i], limits));
@@ -57,31 +63,6 @@ export function fitClassModel(rows: readonly Float64Array[], options: ClassModel
     model,
     heldOut,
     heldOutNonconformity: scores.sort((a, b) => a - b),
-    cautions: []
-  };
-}
-
-function chooseLimits(
-  n: number,
-  components: number,
-  residual: ArrayLike<number>,
-  heldOut: HeldOutDistances,
-  significance: number
-): ClassLimits {
-  if (n >= LARGE_SET) {
-    return {
-      significance,
-      t2: t2Limit('F, new object', n, components, significance),
-      t2Form: 'F, new object',
-      q: jacksonMudholkarLimit(residual, significance).limit,
-      qForm: 'Jackson-Mudholkar'
-    };
-  }
-  return {
-    significance,
-    t2: scaledChiSquaredLimit(classicalMoments(heldOut.t2), significance),
-    t2Form: 'data-driven chi-squared',
-    q: scaledChiSquaredLimit(classicalMoments(heldOut.q), significance),
-    qForm: 'data-driven chi-squared'
+    cautions: limitCautions(n, folds.length, wanted, kept)
   };
 }

@@ -22,7 +22,8 @@ export function centredGram(rows: readonly Float64Array[]): CentredGram {
   if (n < 2) throw new RangeError(`A class model needs at least two spectra; there are ${n}.`);
   const points = rows[0].length;
   rows.forEach((row, i) => {
-    if (row.length !== points) throw new RangeError(`Spectrum ${i + 1} has ${row.length} points, not ${points}.`);
+    if (row.length !== points)
+      throw new RangeError(`Spectrum ${i + 1} has ${row.length} points, not ${points}.`);
   });
   const mean = columnMeans(rows, points);
   const centred = new Float64Array(n * points);

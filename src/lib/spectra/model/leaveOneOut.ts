@@ -74,7 +74,13 @@ export function foldsBySource(sources: readonly string[], n: number): number[][]
   return [...folds.values()];
 }
 
-function heldOutFold(fit: Pca, fold: readonly number[], kept: number, t2: Float64Array, q: Float64Array): void {
+function heldOutFold(
+  fit: Pca,
+  fold: readonly number[],
+  kept: number,
+  t2: Float64Array,
+  q: Float64Array
+): void {
   const { n } = fit;
   const gram = fit.centred.gram;
   const out = new Set(fold);

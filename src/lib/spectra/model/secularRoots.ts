@@ -16,7 +16,12 @@ export interface DowndatedPairs {
  * @param poles descending
  * @param rho at least 0
  */
-export function downdatedPairs(poles: Float64Array, z: Float64Array, rho: number, count: number): DowndatedPairs {
+export function downdatedPairs(
+  poles: Float64Array,
+  z: Float64Array,
+  rho: number,
+  count: number
+): DowndatedPairs {
   const size = poles.length;
   const problem = deflate(poles, z, rho);
   const pairs: { value: number; vector: Float64Array }[] = problem.untouched.map((index) => ({
@@ -89,7 +94,12 @@ function deflate(poles: Float64Array, original: Float64Array, rho: number): Defl
 }
 
 /** The root between active pole k and the next one (or below the last), with its eigenvector. */
-function rootBelow(problem: Deflated, k: number, rho: number, size: number): { value: number; vector: Float64Array } {
+function rootBelow(
+  problem: Deflated,
+  k: number,
+  rho: number,
+  size: number
+): { value: number; vector: Float64Array } {
   const { poles, z, active } = problem;
   let squares = 0;
   for (let j = 0; j < z.length; j++) squares += z[j] * z[j];

@@ -82,7 +82,10 @@ function reflectTrailing(a: Float64Array, n: number, from: number, v: Float64Arr
 }
 
 /** Q' = H(last) ... H(1), row-major, built from the last reflector back so that the work stays small. */
-function accumulate(reflectors: readonly { v: Float64Array; beta: number; from: number }[], n: number): Float64Array {
+function accumulate(
+  reflectors: readonly { v: Float64Array; beta: number; from: number }[],
+  n: number
+): Float64Array {
   const q = new Float64Array(n * n);
   for (let i = 0; i < n; i++) q[i * n + i] = 1;
   for (let r = reflectors.length - 1; r >= 0; r--) {
