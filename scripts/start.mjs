@@ -8,7 +8,7 @@
  * and changes tables) and DATABASE_APP_URL (the application's role there, otherwise wharfinger_app with a password
  * made here); SMTP_URL (a real mail server instead of the mail catcher).
  */
-import { mkdirSync, readFileSync, realpathSync, renameSync, writeFileSync, existsSync } from 'node:fs';
+import { existsSync, mkdirSync, readFileSync, renameSync, writeFileSync } from 'node:fs';
 import { dirname, join, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { demoAccountLines, runScript, startApplication, startMailCatcher } from './lib/application.mjs';

@@ -29,9 +29,10 @@ export function tallyCheck(exitCode) {
  * Counts a vitest JSON report. A file that failed before its tests were known counts as one failure.
  * @param {{ testResults?: { status: string, assertionResults: { status: string }[] }[] } | null} report null when none was written
  * @param {number} exitCode
+ * @param {boolean} [picked] tests were picked by name: the others are not "skipped"
  * @returns {Tally}
  */
-export function tallyVitest(report, exitCode) {
+export function tallyVitest(report, exitCode, picked = false) {
   const tally = emptyTally();
   for (const file of report?.testResults ?? []) {
     for (const { status } of file.assertionResults) {
@@ -42,7 +43,7 @@ export function tallyVitest(report, exitCode) {
     if (file.status === 'failed' && !file.assertionResults.some((a) => a.status === 'failed'))
       tally.failed += 1;
   }
-  return heedExitCode(tally, exitCode);
+  return heedExitCode(picked ? { ...tally, skipped: 0 } : tally, exitCode);
 }
 
 /**
