@@ -1,4 +1,5 @@
 import { createHash, randomUUID } from 'node:crypto';
+import { getTableColumns } from 'drizzle-orm';
 import { canonicalJson } from '../../identity/canonicalJson';
 import { done, refuse, type Outcome } from '../../domain/refusals';
 import { actingRole, ROLE_NAMES, type Action } from '../../domain/roles';
@@ -117,21 +118,21 @@ export async function sign(
       record,
       recordSha256
     })
-    .returning({ signature: signatures, signedAtText });
+    .returning({ ...getTableColumns(signatures), signedAtText });
   await recordTrail(tx, act, {
     action: 'signature.make',
-    role: row.signature.role,
+    role: row.role,
     recordType: 'signature',
     recordId: signatureId,
     recordLabel: `Signature of ${act.actor.printedName}`,
     lotId: input.lotId ?? (input.recordType === 'lot' ? input.recordId : null),
-    after: signatureEntry(row.signature, row.signedAtText),
+    after: signatureEntry(row, row.signedAtText),
     reason: input.reason
   });
   return {
     id: signatureId,
     sha256: recordSha256,
-    signedAt: row.signature.signedAt,
+    signedAt: row.signedAt,
     printedName: act.actor.printedName
   };
 }
