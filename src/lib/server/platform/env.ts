@@ -6,6 +6,8 @@ export const trailKeyFile = () => read('TRAIL_KEY_FILE');
 /** File outside the database to which every tree head is appended. */
 export const trailHeadsFile = () => read('TRAIL_HEADS_FILE');
 export const smtpUrl = () => read('SMTP_URL');
+/** Where the local mail catcher keeps mails; only in demo and tests. */
+export const mailFolder = () => read('MAIL_FOLDER');
 export const mailFrom = () => read('MAIL_FROM') ?? 'Wharfinger <wharfinger@localhost>';
 /** Where people reach the application; links in mails begin with it. */
 export const origin = () => read('ORIGIN') ?? 'http://127.0.0.1:4180';
