@@ -56,8 +56,8 @@ module.exports = {
     doNotFollow: { path: 'node_modules' },
     tsPreCompilationDeps: true,
     tsConfig: { fileName: 'tsconfig.json' },
+    webpackConfig: { fileName: require.resolve('./tests/architecture/aliases.cjs') },
     enhancedResolveOptions: {
-      alias: { $lib: require('node:path').resolve(__dirname, 'src/lib') },
       exportsFields: ['exports'],
       conditionNames: ['svelte', 'import', 'node', 'default', 'types'],
       mainFields: ['svelte', 'module', 'main', 'types'],

@@ -1,0 +1,24 @@
+import { readFileSync } from 'node:fs';
+import { describe, expect, it } from 'vitest';
+import { writtenFiles } from './sourceFiles';
+
+/** The most lines a file may have; the aim is about two thirds of it. */
+const LIMITS: [string, RegExp, number][] = [
+  ['a file of the pure floors', /^src\/lib\/(spectra|identity|domain)\/.*\.ts$/, 200],
+  ['a file of the server', /^src\/(lib\/server|hooks)[/.].*\.ts$/, 300],
+  ['a route file', /^src\/routes\/.*\.ts$/, 300],
+  ['a component or page', /^src\/.*\.svelte$/, 300],
+  ['a test', /^tests\/.*\.ts$/, 500],
+  ['a script', /^scripts\/.*\.(ts|mjs)$/, 300]
+];
+
+describe('a file is one idea and stays readable', () => {
+  const files = writtenFiles();
+  it.each(LIMITS)('%s (%s) has at most %i lines', (_, pattern, limit) => {
+    const long = files
+      .filter((path) => pattern.test(path))
+      .map((path) => ({ path, lines: readFileSync(path, 'utf8').trimEnd().split('\n').length }))
+      .filter(({ lines }) => lines > limit);
+    expect(long).toEqual([]);
+  });
+});
