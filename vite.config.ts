@@ -12,7 +12,10 @@ export default defineConfig({
         test: {
           name: 'unit',
           environment: 'node',
-          include: ['tests/{spectra,identity,domain,standards,architecture,scripts,reference}/**/*.test.ts'],
+          include: [
+            'tests/{spectra,identity,domain,ui,standards,architecture,scripts,reference}/**/*.test.ts'
+          ],
+          setupFiles: ['tests/support/fixedSeed.ts'],
           testTimeout: 30_000
         }
       },
@@ -22,6 +25,7 @@ export default defineConfig({
           name: 'server',
           environment: 'node',
           include: ['tests/server/**/*.test.ts'],
+          setupFiles: ['tests/support/fixedSeed.ts'],
           fileParallelism: false,
           testTimeout: 60_000,
           hookTimeout: 120_000
