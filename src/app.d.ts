@@ -5,7 +5,11 @@ declare global {
     interface Locals {
       /** Who acts; null where nobody is signed in. */
       act: Act | null;
+      /** What an instrument's token is limited to; null for a person's session. */
+      scopes: readonly string[] | null;
       requestId: string;
+      /** Set when the request failed unexpectedly. */
+      errorId?: string;
     }
     interface Error {
       message: string;

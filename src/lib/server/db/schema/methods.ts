@@ -1,5 +1,15 @@
 import { sql } from 'drizzle-orm';
-import { check, index, integer, jsonb, pgTable, primaryKey, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
+import {
+  check,
+  index,
+  integer,
+  jsonb,
+  pgTable,
+  primaryKey,
+  text,
+  uniqueIndex,
+  uuid
+} from 'drizzle-orm/pg-core';
 import type { MethodDefinition } from '../../../identity/method';
 import { METHOD_VERSION_STATUSES, RUN_KINDS, RUN_STATUSES } from '../../../domain/methods';
 import { bytea, idKey, instant } from './columns';
@@ -16,7 +26,9 @@ export const methods = pgTable('methods', {
     .unique()
     .references(() => materials.id, { onDelete: 'restrict' }),
   code: text().notNull().unique(),
-  createdAt: instant().notNull().default(sql`clock_timestamp()`)
+  createdAt: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`)
 });
 
 /** One version: a draft may change, an effective one never (trigger and privilege). */
@@ -41,7 +53,9 @@ export const methodVersions = pgTable(
       .notNull()
       .references(() => users.id, { onDelete: 'restrict' }),
     authorName: text().notNull(),
-    createdAt: instant().notNull().default(sql`clock_timestamp()`),
+    createdAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     submittedAt: instant(),
     authorSignatureId: uuid().references(() => signatures.id, { onDelete: 'restrict' }),
     approverId: uuid().references(() => users.id, { onDelete: 'restrict' }),
@@ -52,7 +66,13 @@ export const methodVersions = pgTable(
   },
   (t) => [
     uniqueIndex('method_versions_number').on(t.methodId, t.version),
-    uniqueIndex('method_versions_one_effective').on(t.methodId).where(sql`${t.status} = 'effective'`),
+    uniqueIndex('method_versions_one_effective')
+      .on(t.methodId)
+      .where(sql`${t.status} = 'effective'`),
+    check(
+      'method_versions_bundle_hash_true',
+      sql`(${t.bundle} is null) = (${t.bundleSha256} is null) and (${t.bundle} is null or ${t.bundleSha256} = encode(sha256(${t.bundle}), 'hex'))`
+    ),
     check('method_versions_four_eyes', sql`${t.approverId} is null or ${t.approverId} <> ${t.authorId}`),
     check(
       'method_versions_effective_whole',
@@ -72,7 +92,10 @@ export const methodVersionReferences = pgTable(
       .notNull()
       .references(() => referenceSpectra.id, { onDelete: 'restrict' })
   },
-  (t) => [primaryKey({ columns: [t.methodVersionId, t.referenceId] }), index('mvr_reference').on(t.referenceId)]
+  (t) => [
+    primaryKey({ columns: [t.methodVersionId, t.referenceId] }),
+    index('mvr_reference').on(t.referenceId)
+  ]
 );
 
 /**
@@ -111,7 +134,9 @@ export const methodRuns = pgTable(
     evidence: jsonb().$type<Record<string, unknown>>(),
     acknowledgementSignatureId: uuid().references(() => signatures.id, { onDelete: 'restrict' }),
     requestedBy: uuid().references(() => users.id, { onDelete: 'restrict' }),
-    createdAt: instant().notNull().default(sql`clock_timestamp()`),
+    createdAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     finishedAt: instant()
   },
   (t) => [index('method_runs_version').on(t.methodVersionId, t.createdAt)]
@@ -124,7 +149,9 @@ export const challengeSets = pgTable('challenge_sets', {
   materialId: uuid().references(() => materials.id, { onDelete: 'restrict' }),
   curatorId: uuid().references(() => users.id, { onDelete: 'restrict' }),
   uses: integer().notNull().default(0),
-  createdAt: instant().notNull().default(sql`clock_timestamp()`)
+  createdAt: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`)
 });
 
 export const challengeSpectra = pgTable('challenge_spectra', {

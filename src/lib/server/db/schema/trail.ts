@@ -12,8 +12,12 @@ export const trailEntries = pgTable(
   'trail_entries',
   {
     id: bigint({ mode: 'number' }).primaryKey().generatedAlwaysAsIdentity(),
-    xid: xid8().notNull().default(sql`pg_current_xact_id()`),
-    at: instant().notNull().default(sql`clock_timestamp()`),
+    xid: xid8()
+      .notNull()
+      .default(sql`pg_current_xact_id()`),
+    at: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     /** Null for an act of the system itself; the name then says which service and version. */
     actorId: uuid(),
     actorName: text().notNull(),
@@ -36,6 +40,8 @@ export const trailEntries = pgTable(
     contentHash: text().notNull().default('')
   },
   (t) => [
+    // The sealer asks for entries of transactions since it last looked.
+    index('trail_entries_xid').on(t.xid),
     index('trail_entries_record').on(t.recordType, t.recordId),
     index('trail_entries_lot').on(t.lotId),
     index('trail_entries_actor').on(t.actorId, t.at),
@@ -50,7 +56,9 @@ export const trailLeaves = pgTable('trail_leaves', {
   entryId: bigint({ mode: 'number' }).notNull().unique(),
   /** SHA-256(0x00 || content), hex. */
   leafHash: text().notNull(),
-  sealedAt: instant().notNull().default(sql`clock_timestamp()`)
+  sealedAt: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`)
 });
 
 /** Interior nodes of full subtrees, for proofs: level 0 is the leaves' parents. Append-only. */
@@ -83,7 +91,9 @@ export const trailReviews = pgTable('trail_reviews', {
   reviewedBy: uuid()
     .notNull()
     .references(() => users.id, { onDelete: 'restrict' }),
-  reviewedAt: instant().notNull().default(sql`clock_timestamp()`)
+  reviewedAt: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`)
 });
 
 /** A person's saved trail filters. */
@@ -95,7 +105,9 @@ export const savedFilters = pgTable('saved_filters', {
   page: text().notNull(),
   name: text().notNull(),
   query: text().notNull(),
-  createdAt: instant().notNull().default(sql`clock_timestamp()`)
+  createdAt: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`)
 });
 
 /** Transactional outbox of mail: written with the change it tells of, sent afterwards with retries. */
@@ -108,13 +120,22 @@ export const outboxMails = pgTable(
     kind: text().notNull(),
     subject: text().notNull(),
     body: text().notNull(),
-    status: text({ enum: ['waiting', 'sent', 'failed'] }).notNull().default('waiting'),
+    status: text({ enum: ['waiting', 'sent', 'failed'] })
+      .notNull()
+      .default('waiting'),
     attempts: integer().notNull().default(0),
     lastError: text(),
-    nextAttemptAt: instant().notNull().default(sql`clock_timestamp()`),
-    createdAt: instant().notNull().default(sql`clock_timestamp()`),
+    nextAttemptAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
+    createdAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     sentAt: instant()
   },
-  (t) => [index('outbox_mails_waiting').on(t.nextAttemptAt).where(sql`${t.status} = 'waiting'`)]
+  (t) => [
+    index('outbox_mails_waiting')
+      .on(t.nextAttemptAt)
+      .where(sql`${t.status} = 'waiting'`)
+  ]
 );
-

@@ -1,0 +1,2 @@
+CREATE INDEX "trail_entries_xid" ON "trail_entries" USING btree ("xid");--> statement-breakpoint
+ALTER TABLE "method_versions" ADD CONSTRAINT "method_versions_bundle_hash_true" CHECK (("method_versions"."bundle" is null) = ("method_versions"."bundle_sha256" is null) and ("method_versions"."bundle" is null or "method_versions"."bundle_sha256" = encode(sha256("method_versions"."bundle"), 'hex')));
