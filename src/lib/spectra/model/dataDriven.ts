@@ -15,10 +15,10 @@ const MOST_DOF = 250;
 
 /**
  * Classical moments (Pomerantsev, J. Chemometrics 22:601, 2008): mean u0 and N = round(2 (u0/s)^2), s with
- * divisor n. At least one degree of freedom.
+ * divisor n - 1. At least one degree of freedom.
  */
 export function classicalMoments(distances: ArrayLike<number>): ScaledChiSquared {
-  const { mean, variance } = moments(distances, 0);
+  const { mean, variance } = moments(distances);
   if (!(mean > 0)) return { mean: 0, dof: 1 };
   if (!(variance > 0)) return { mean, dof: MOST_DOF };
   return { mean, dof: clampDof(Math.round((2 * mean * mean) / variance)) };
@@ -74,7 +74,7 @@ export function scaledChiSquaredLimit(fit: ScaledChiSquared, significance: numbe
 
 /**
  * The same for few distances, with allowance for how little they say. The degrees of freedom, N = 2 (u0/s)^2
- * with s of divisor n - 1, are lowered by about one standard error, sqrt((2 + 12/N)/n) of themselves; and since
+ * as above, are lowered by about one standard error, sqrt((2 + 12/N)/n) of themselves; and since
  * u0 is itself a mean of n such distances, u0/N chi2(N) gives way to u0 F(N, nN). On simulated classes (white
  * and correlated noise, 1 to 4 components) a 1 % limit from held-out distances then rejects 1.5 to 3 % of
  * genuine new spectra at 12 references and up to 5 % at 5, where the plain form rejects up to 6 and 11 %.
@@ -83,7 +83,7 @@ export function scaledChiSquaredLimit(fit: ScaledChiSquared, significance: numbe
  */
 export function fewDistancesLimit(distances: ArrayLike<number>, count: number, significance: number): number {
   assertSignificance(significance);
-  const { mean, variance } = moments(distances, 1);
+  const { mean, variance } = moments(distances);
   if (!(mean > 0)) return 0;
   const plain = variance > 0 ? (2 * mean * mean) / variance : MOST_DOF;
   const dof = clampDof(plain / (1 + Math.sqrt((2 + 12 / plain) / count)));
@@ -97,19 +97,20 @@ export function fewDistancesLimit(distances: ArrayLike<number>, count: number, s
  */
 export function boxLimit(q: ArrayLike<number>, significance: number, wholeDegrees = false): number {
   assertSignificance(significance);
-  const { mean, variance } = moments(q, 1);
+  const { mean, variance } = moments(q);
   const g = variance / (2 * mean);
   const h = (2 * mean * mean) / variance;
   return g * chiSquaredQuantile(1 - significance, wholeDegrees ? Math.max(1, Math.floor(h)) : h);
 }
 
-function moments(values: ArrayLike<number>, less: 0 | 1): { mean: number; variance: number } {
+/** Mean, and variance with divisor n - 1. */
+function moments(values: ArrayLike<number>): { mean: number; variance: number } {
   let sum = 0;
   for (let i = 0; i < values.length; i++) sum += values[i];
   const mean = sum / values.length;
   let squares = 0;
   for (let i = 0; i < values.length; i++) squares += (values[i] - mean) * (values[i] - mean);
-  return { mean, variance: squares / (values.length - less) };
+  return { mean, variance: squares / (values.length - 1) };
 }
 
 /** Sample quantile by linear interpolation between order statistics (Hyndman & Fan type 7). */
