@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import type { Decision, Verdict } from '../identity/decision';
+import type { CriterionCode, Decision, Verdict } from '../identity/decision';
 import type { ContainerStatus } from './containers';
 import { can, type Actor } from './roles';
 
@@ -82,3 +82,12 @@ export function decisionFor(actor: Pick<Actor, 'roles'>, decision: Decision): De
     explanation: { ...decision.explanation, detail: decision.explanation.reason, rivals: [], mixture: [] }
   };
 }
+
+export const CRITERION_NAMES: Readonly<Record<CriterionCode, string>> = {
+  correlation: 'Correlation with the reference mean',
+  'hotelling-t2': 'Distance inside the class model (T2)',
+  'q-residual': 'Distance from the class model (Q)',
+  'best-match': 'Gap to the best other material',
+  'unexplained-bands': 'Largest band not expected',
+  'missing-bands': 'Largest band missing'
+};
