@@ -1,4 +1,4 @@
-import { SvelteKitAuth } from '@auth/sveltekit';
+import { SvelteKitAuth, type SvelteKitAuthConfig } from '@auth/sveltekit';
 import Credentials from '@auth/sveltekit/providers/credentials';
 import { isRedirect, type RequestEvent } from '@sveltejs/kit';
 import { SESSION_ABSOLUTE_HOURS } from '../../domain/accounts';
@@ -16,7 +16,7 @@ export const SESSION_COOKIE = '__Host-wharfinger';
  * bits that key our sessions table, `decode` reads that table at every request, `encode` hands the same bits
  * back. Ending the row ends the session everywhere at once, which a signed token could not do.
  */
-const { handle, signIn, signOut } = SvelteKitAuth((event) => ({
+const configure = (event: RequestEvent): SvelteKitAuthConfig => ({
   trustHost: true,
   pages: { signIn: '/signin', error: '/signin' },
   session: { strategy: 'jwt', maxAge: SESSION_ABSOLUTE_HOURS * 3600 },
@@ -68,7 +68,9 @@ const { handle, signIn, signOut } = SvelteKitAuth((event) => ({
     warn: () => {},
     debug: () => {}
   }
-}));
+});
+// Promised, because the library asks for it so when the request is to be seen.
+const { handle, signIn, signOut } = SvelteKitAuth((event) => Promise.resolve(configure(event)));
 
 export const authHandle = handle;
 
