@@ -1,6 +1,9 @@
 import type { z } from 'zod';
 import type { Spectrum } from '../spectrum';
 
+/** What a step is for: groups steps in the method builder and lets a recipe's order be checked. */
+export type StepKind = 'despike' | 'grid' | 'range' | 'baseline' | 'filter' | 'scaling';
+
 /**
  * One preprocessing step. A stored method holds `{ name, version, options }`; a changed behaviour is a new
  * version beside the old one, and old ones stay runnable so that every stored decision still computes.
@@ -8,6 +11,7 @@ import type { Spectrum } from '../spectrum';
 export interface PreprocessStep<Name extends string, Options extends z.ZodType> {
   readonly name: Name;
   readonly version: number;
+  readonly kind: StepKind;
   /** What a person calls it, e.g. "Baseline, asymmetric least squares". */
   readonly title: string;
   /** Paper or standard the step is taken from. */
@@ -16,7 +20,7 @@ export interface PreprocessStep<Name extends string, Options extends z.ZodType> 
   /** Options that suit ordinary powders. */
   readonly defaults: z.output<Options>;
   /**
-   * Pure: returns a new spectrum, never mutates its input.
+   * Pure: returns a new spectrum, never mutates its input. The axis array may be shared with the input.
    * @throws StepRefusal when the spectrum cannot be so treated (e.g. zero variance in SNV).
    */
   apply(spectrum: Spectrum, options: z.output<Options>, context: StepContext): Spectrum;
@@ -31,7 +35,13 @@ export interface StepContext {
 /** A spectrum that a step cannot treat; becomes an `invalid` verdict, never a crash. */
 export class StepRefusal extends Error {
   constructor(
-    readonly code: 'outside-axis' | 'zero-variance' | 'too-few-points' | 'axis-not-uniform' | 'no-points-left' | 'no-reference',
+    readonly code:
+      | 'outside-axis'
+      | 'zero-variance'
+      | 'too-few-points'
+      | 'axis-not-uniform'
+      | 'no-points-left'
+      | 'no-reference',
     message: string
   ) {
     super(message);
