@@ -17,6 +17,9 @@ const MOST_COMPONENTS = 8;
 /** A component that is this nearly a combination of others adds nothing that can be told apart. */
 const COLLINEAR = 1e-10;
 
+/** What lies under the components and belongs to none of them; fitted with either sign and then set aside. */
+export type ShareBackground = 'none' | 'constant' | 'line';
+
 /**
  * Shares of a few known components in a spectrum: the exact minimum of |y - sum c_k x_k|^2 with every c_k at
  * least 0. With so few components every subset is solved and the best feasible one kept, which is exact and
@@ -29,8 +32,38 @@ const COLLINEAR = 1e-10;
  * @param spectrum after the same treatment as the components; a linear one (not scaled spectrum by spectrum)
  *   if the shares are to be amounts rather than an indication
  * @param components 1 to 8, same length as the spectrum, each scaled as one unit of its material
+ * @param background a constant by default: an offset left by a baseline or a dark signal moves shares by several
+ *   percent when it is not allowed for
  */
-export function nonNegativeShares(spectrum: Float64Array, components: readonly Float64Array[]): Shares {
+export function nonNegativeShares(
+  spectrum: Float64Array,
+  components: readonly Float64Array[],
+  background: ShareBackground = 'constant'
+): Shares {
+  // Least squares with a free background is least squares on what is left when the background is taken out of
+  // the spectrum and of each component (Frisch & Waugh).
+  return sharesOf(
+    withoutBackground(spectrum, background),
+    components.map((component) => withoutBackground(component, background))
+  );
+}
+
+function withoutBackground(values: Float64Array, background: ShareBackground): Float64Array {
+  if (background === 'none') return values;
+  const points = values.length;
+  const middle = (points - 1) / 2;
+  let sum = 0;
+  let tilt = 0;
+  for (let j = 0; j < points; j++) {
+    sum += values[j];
+    tilt += values[j] * (j - middle);
+  }
+  const mean = sum / points;
+  const slope = background === 'line' ? tilt / ((points * (points * points - 1)) / 12) : 0;
+  return values.map((value, j) => value - mean - slope * (j - middle));
+}
+
+function sharesOf(spectrum: Float64Array, components: readonly Float64Array[]): Shares {
   const count = components.length;
   if (count < 1 || count > MOST_COMPONENTS) {
     throw new RangeError(`Shares can be found for 1 to ${MOST_COMPONENTS} components; there are ${count}.`);
