@@ -68,12 +68,15 @@ export async function verifyTrail(db: Database, options: VerifyOptions = {}): Pr
   });
 }
 
+const HEAD_NAMES = { inside: 'The tree head', outside: 'The tree head kept outside the database' } as const;
+
 class Verification {
   readonly #faults: TrailFault[] = [];
   readonly #tree = new GrowingTree(sha256);
   readonly #nodes: NodeRow[] = [];
   readonly #outside: OutsideHead[];
-  #lastGood = 0;
+  readonly #lastGood = { inside: 0, outside: 0 };
+  #rootFault: string | undefined;
   #heads = 0;
   #head: TreeHead | null = null;
 
@@ -116,7 +119,8 @@ class Verification {
         while (this.#outside[outsideAt]?.size <= this.#tree.size)
           this.#checkOutside(this.#outside[outsideAt++]);
       }
-      await this.#checkNodes();
+      await this.#checkNodes(rows);
+      this.#checkRoots();
       if (gap >= 0) {
         this.#fault(
           'deleted',
@@ -173,17 +177,20 @@ class Verification {
     this.#nodes.push(...this.#tree.append(leaf).map(named));
   }
 
-  async #checkNodes(): Promise<void> {
+  async #checkNodes(rows: readonly LeafRow[]): Promise<void> {
     const made = this.#nodes.splice(0);
     const stored = await readStoredNodes(this.tx, made);
     const wrong = made.find((node) => stored.get(`${node.level}/${node.nodeIndex}`) !== node.hash);
     if (!wrong || this.#faults.length > 0) return;
     const width = 2 ** (wrong.level + 1);
     const [first, last] = [wrong.nodeIndex * width, (wrong.nodeIndex + 1) * width - 1];
+    const ids = rows
+      .filter((row) => row.leafIndex >= first && row.leafIndex <= last)
+      .map((row) => row.entryId);
     this.#fault(
       'reordered',
-      null,
-      `The entries at leaves ${first} to ${last} are not those that were sealed there: entries were rewritten, exchanged, put in or taken out.`
+      ids[0] ?? null,
+      `At leaves ${first} to ${last} stand the entries ${ids.join(', ')}, but others were sealed there: entries were rewritten, exchanged, put in or taken out.`
     );
   }
 
@@ -193,24 +200,25 @@ class Verification {
     const key = [...this.keys].find((candidate) => headIsSignedBy(head, candidate));
     if (!key)
       this.#fault('head', null, `The tree head of ${head.size} entries is not signed by a known key.`);
-    this.#compareRoot(head, 'The tree head');
+    this.#compareRoot(head, 'inside');
   }
 
   #checkOutside(head: OutsideHead): void {
     // A size that is no longer reached was told as a gap already.
-    if (head.size === this.#tree.size) this.#compareRoot(head, 'The tree head kept outside the database');
+    if (head.size === this.#tree.size) this.#compareRoot(head, 'outside');
   }
 
-  #compareRoot(head: TreeHead, what: string): void {
+  #compareRoot(head: TreeHead, from: 'inside' | 'outside'): void {
     if (hex(this.#tree.root()) === head.rootHash) {
-      this.#lastGood = Math.max(this.#lastGood, head.size);
-    } else if (this.#faults.length === 0) {
-      this.#fault(
-        'range',
-        null,
-        `${what} of ${head.size} entries does not agree: something among leaves ${this.#lastGood} to ${head.size - 1} was rewritten.`
-      );
+      this.#lastGood[from] = Math.max(this.#lastGood[from], head.size);
+    } else {
+      this.#rootFault ??= `${HEAD_NAMES[from]} of ${head.size} entries does not agree: something among leaves ${this.#lastGood[from]} to ${head.size - 1} was rewritten.`;
     }
+  }
+
+  /** A root that differs says only "somewhere": told where nothing nearer was found. */
+  #checkRoots(): void {
+    if (this.#rootFault && this.#faults.length === 0) this.#fault('range', null, this.#rootFault);
   }
 
   async #checkLostHeads(): Promise<void> {
