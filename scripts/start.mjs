@@ -192,6 +192,8 @@ async function stopAll() {
 }
 
 async function main() {
+  // Whoever read the output may have gone (npm start | head); that is no reason to leave things running.
+  for (const stream of [process.stdout, process.stderr]) stream.on('error', () => {});
   const options = readOptions();
   if (!options) {
     say(

@@ -39,9 +39,9 @@ export async function startOwnDatabase({ data, say, signal }) {
   const kept = readSecrets(secretsFile);
   if (place.state === 'ready' && !kept) throw new PlainStop(lostPasswordsSentence(place.folder, secretsFile));
   if (place.moved) say(`The database lies in ${place.folder}, because its account cannot enter ${data}.`);
+  if (place.state === 'to make') assertRoom(place.folder);
   const secrets = kept ?? makeSecrets(secretsFile);
   if (place.state === 'to make') {
-    assertRoom(place.folder);
     say('Making the database …');
     await makeCluster(cluster, { ...secrets, data: folder });
   }

@@ -164,7 +164,7 @@ export async function stopCluster(cluster) {
  * @param {'made' | 'started'} what @param {string} output @param {string} folder
  */
 export function explainFailure(what, output, folder) {
-  if (/No space left on device|could not write .*: Success/i.test(output)) return diskFullSentence(folder);
+  if (/No space left on device|Check free disk space/i.test(output)) return diskFullSentence(folder);
   const telling = output.split('\n').filter((line) => /\b(error|FATAL|PANIC|HINT|DETAIL)\b:/i.test(line));
   const lines = telling.length > 0 ? telling.slice(-6) : output.trim().split('\n').slice(-6);
   const kept = what === 'started' ? ' What is stored in it is untouched.' : '';

@@ -156,8 +156,12 @@ describe('where the cluster lies', () => {
 
 describe('what is said when PostgreSQL will not', () => {
   it('names a full disk as such', () => {
-    const output = 'FATAL:  could not write to file "pg_wal/xlogtemp.19": No space left on device';
-    expect(explainFailure('started', output, '/x/data')).toBe(diskFullSentence('/x/data'));
+    const outputs = [
+      'FATAL:  could not write to file "pg_wal/xlogtemp.19": No space left on device',
+      'FATAL:  could not extend file "base/1/2691": wrote only 4096 of 8192 bytes\nHINT:  Check free disk space.'
+    ];
+    for (const output of outputs)
+      expect(explainFailure('started', output, '/x/data')).toBe(diskFullSentence('/x/data'));
   });
 
   it('passes on the telling lines and says that the data is untouched', () => {
