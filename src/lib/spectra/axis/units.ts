@@ -1,0 +1,12 @@
+/**
+ * Raman shift and wavelength. With the excitation wavelength L0 and the scattered wavelength L, both in nm, the
+ * shift in cm-1 is 1e7/L0 - 1e7/L: positive for Stokes, negative for anti-Stokes scattering.
+ *
+ * Example: 785 nm excitation, light at 850 nm: 1e7/785 - 1e7/850 = 974.1476 cm-1.
+ */
+export const shiftFromWavelength = (excitationNm: number, wavelengthNm: number): number =>
+  1e7 / excitationNm - 1e7 / wavelengthNm;
+
+/** Wavelength (nm) at which light of this shift (cm-1) is found; the inverse of the above. */
+export const wavelengthFromShift = (excitationNm: number, shiftCm1: number): number =>
+  1e7 / (1e7 / excitationNm - shiftCm1);
