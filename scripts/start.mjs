@@ -147,7 +147,8 @@ async function prepareDatabase(env, ownerUrl, appPassword, demo) {
     'The database could not be brought up to date.'
   );
   if (!demo) return;
-  say('Looking whether the demo plant is to be made …');
+  // The seed itself looks whether the database is empty.
+  if (!existsSync(/** @type {string} */ (env.DEMO_ACCOUNTS_FILE))) say('Making the demo plant …');
   await runScript(
     'scripts/seed.ts',
     { root: ROOT, env: asOwner, signal },

@@ -1,10 +1,11 @@
-import { chmodSync, mkdtempSync, rmSync } from 'node:fs';
+import { chmodSync, existsSync, mkdtempSync, readFileSync, readdirSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { randomBytes } from 'node:crypto';
 import { canEnter } from './clusterPlace.mjs';
 import { localUrl } from './databaseUrls.mjs';
 import { assertRoom } from './diskRoom.mjs';
+import { holderIsAlive, takeFolderLock } from './folderLock.mjs';
 import { makeCluster, startCluster, stopCluster } from './postgresCluster.mjs';
 import { ensurePrograms, serverAccount } from './postgresPrograms.mjs';
 
@@ -16,6 +17,10 @@ const FAST_AND_LOOSE = [
   'max_connections = 200'
 ];
 
+const PARENTS = [tmpdir(), '/var/tmp'];
+const PREFIX = 'wharfinger-test-';
+const LOCK = 'run.lock';
+
 /**
  * A throw-away cluster in a temporary folder outside the checkout. Tests are given its superuser: they make
  * databases of their own and try what an owner or superuser could do to the trail.
@@ -25,9 +30,11 @@ const FAST_AND_LOOSE = [
 export async function startTestDatabase({ say, signal }) {
   const programs = await ensurePrograms({ say, signal });
   const account = await serverAccount();
+  await sweepAbandoned(programs, account);
   const base = await temporaryFolder(account);
   const cluster = { folder: join(base, 'postgres'), programs, account, signal };
   const remove = () => rmSync(base, { recursive: true, force: true });
+  takeFolderLock(join(base, LOCK), `${base} is not ours.`);
   const password = randomBytes(18).toString('base64url');
   try {
     assertRoom(base);
@@ -46,10 +53,28 @@ export async function startTestDatabase({ say, signal }) {
   }
 }
 
+/**
+ * Stops and removes the servers of test runs that were killed before they could do so.
+ * @param {import('./postgresPrograms.mjs').PostgresPrograms} programs
+ * @param {import('./processes.mjs').Account | null} account
+ */
+async function sweepAbandoned(programs, account) {
+  for (const parent of new Set(PARENTS)) {
+    for (const name of readdirSync(parent).filter((entry) => entry.startsWith(PREFIX))) {
+      const base = join(parent, name);
+      const lock = join(base, LOCK);
+      if (!existsSync(lock) || holderIsAlive(readFileSync(lock, 'utf8'))) continue;
+      const cluster = { folder: join(base, 'postgres'), programs, account };
+      if (existsSync(join(cluster.folder, 'cluster', 'postmaster.pid'))) await stopCluster(cluster);
+      rmSync(base, { recursive: true, force: true });
+    }
+  }
+}
+
 /** A new temporary folder that the account can enter. @param {import('./processes.mjs').Account | null} account */
 async function temporaryFolder(account) {
-  for (const parent of [tmpdir(), '/var/tmp']) {
-    const folder = mkdtempSync(join(parent, 'wharfinger-test-'));
+  for (const parent of PARENTS) {
+    const folder = mkdtempSync(join(parent, PREFIX));
     chmodSync(folder, 0o711);
     if (await canEnter(folder, account)) return folder;
     rmSync(folder, { recursive: true });
