@@ -12,8 +12,8 @@ import { workArray } from './workArray';
  * points with d >= 0 weigh nothing, the others exp(t |d| / S), both end points exp(t max(negative d) / S). It stops
  * when S < 0.001 sum |y|, or after `maxIterations` rounds (the paper's limit is 20).
  *
- * The stop rule looks at |y| itself, so unlike the other baselines this one may take another number of rounds when
- * a constant is added to the spectrum.
+ * The stop rule looks at |y| itself, so on a high background, such as strong fluorescence, it stops after fewer rounds
+ * with the baseline still within the feet of strong bands. The other baselines do not: prefer them there.
  */
 const options = z.strictObject({ lambda: lambdaOption, maxIterations: maxIterationsOption });
 
