@@ -63,7 +63,7 @@ async function start({ port, host, data, demo, dev }) {
   stops.push(takeFolderLock(join(data, 'start.lock'), alreadyRunningSentence(data)));
   if (!(await isPortFree(port, host))) throw new PlainStop(portInUseSentence(port));
   await ensurePackages(ROOT, { say, signal });
-  await ensureGeneratedSettings(ROOT, signal);
+  await ensureGeneratedSettings(ROOT, { signal });
 
   const outside = process.env.DATABASE_URL;
   const { database, secrets } = outside

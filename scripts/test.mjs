@@ -87,7 +87,7 @@ async function main() {
   const stages = chooseStages({ only: given.only === undefined ? undefined : String(given.only), pattern });
   if (stages.length === 0) throw new PlainStop(`No stage of "${given.only}" holds named tests.`, 2);
   await ensurePackages(ROOT, { say, signal });
-  await ensureGeneratedSettings(ROOT, signal);
+  await ensureGeneratedSettings(ROOT, { signal, always: true });
   const rows = await runStages(stages, pattern);
   say('');
   for (const { name, seconds, tally } of rows) {

@@ -62,11 +62,12 @@ export async function ensurePackages(root, { say, signal }) {
 }
 
 /**
- * Makes SvelteKit's generated TypeScript settings, which scripts and tests read for the $lib paths.
- * @param {string} root @param {AbortSignal} [signal]
+ * Makes SvelteKit's generated TypeScript settings, which scripts and tests read for the $lib paths, and the types of
+ * the routes.
+ * @param {string} root @param {{ signal?: AbortSignal, always?: boolean }} [options] always: the routes may have changed
  */
-export async function ensureGeneratedSettings(root, signal) {
-  if (existsSync(join(root, '.svelte-kit', 'tsconfig.json'))) return;
+export async function ensureGeneratedSettings(root, { signal, always = false } = {}) {
+  if (!always && existsSync(join(root, '.svelte-kit', 'tsconfig.json'))) return;
   const program = join(root, 'node_modules', '@sveltejs', 'kit', 'svelte-kit.js');
   const { code, output } = await runToEnd(process.execPath, [program, 'sync'], {
     cwd: root,
