@@ -2,6 +2,7 @@ import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { centredUnit, correlation, cosine } from '$lib/spectra/compare/correlation';
 import { dot, dotProducts } from '$lib/spectra/compare/dotProducts';
+import { interleavedDots, interleaveRows } from '$lib/spectra/compare/interleavedRows';
 import { bestRivals, packRivals, rivalCorrelations } from '$lib/spectra/compare/rivals';
 import '../support/fixedSeed';
 import { madeClass } from '../support/madeSpectra';
@@ -20,6 +21,17 @@ describe('dot products', () => {
       const single = rows.slice(11 - count).map((row) => dot(row, rows[0]));
       expect(Array.from(out)).toEqual(single);
     }
+  });
+
+  it('of rows stored four abreast equal those of single rows, bit for bit, however many rows there are', () => {
+    const rows = madeClass({ count: 11, points: 37, factors: [2, 1], noise: 0.3, seed: 3 });
+    for (let count = 0; count <= 11; count++) {
+      const some = rows.slice(0, count);
+      const found = interleavedDots(interleaveRows(some, 37), rows[4]);
+      expect(Array.from(found)).toEqual(some.map((row) => dot(row, rows[4])));
+    }
+    expect(() => interleaveRows(rows, 36)).toThrow(RangeError);
+    expect(() => interleavedDots(interleaveRows(rows, 37), new Float64Array(36))).toThrow(RangeError);
   });
 
   it('are summed from first to last: large, small, minus large loses the small one', () => {

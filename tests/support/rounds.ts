@@ -13,11 +13,11 @@ export interface Timing {
 
 /**
  * Times contenders in alternating rounds, so that a machine that slows down or speeds up does so for all of
- * them. One round of each goes before the clock starts. Ratios are taken within a round, then their median.
+ * them. Three rounds of each go before the clock starts. Ratios are taken within a round, then their median.
  */
 export function alternate(contenders: readonly Contender[], rounds = 7): Timing[] {
   const times = contenders.map(() => [] as number[]);
-  for (let round = -1; round < rounds; round++) {
+  for (let round = -3; round < rounds; round++) {
     contenders.forEach((contender, k) => {
       const start = performance.now();
       contender.run();

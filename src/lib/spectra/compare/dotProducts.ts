@@ -1,6 +1,5 @@
 /**
- * Dot products of many packed rows with one vector: the one kernel under correlation against a library,
- * Gram matrices and stacked class models.
+ * Dot products of many packed rows with one vector: the kernel under the Gram matrix of a class model.
  *
  * Order of operations, on which every recorded score rests: each dot product is summed in one float64
  * accumulator, from the first point to the last. Several rows run side by side only to keep the processor
@@ -47,26 +46,25 @@ function dotAt(a: Float64Array, aStart: number, b: Float64Array, bStart: number,
 
 function fourRows(
   rows: Float64Array,
-  start: number,
+  a: number,
   points: number,
   x: Float64Array,
   out: Float64Array,
   outStart: number
 ): void {
-  const a = rows.subarray(start, start + points);
-  const b = rows.subarray(start + points, start + 2 * points);
-  const c = rows.subarray(start + 2 * points, start + 3 * points);
-  const d = rows.subarray(start + 3 * points, start + 4 * points);
+  const b = a + points;
+  const c = b + points;
+  const d = c + points;
   let sumA = 0;
   let sumB = 0;
   let sumC = 0;
   let sumD = 0;
   for (let i = 0; i < points; i++) {
     const value = x[i];
-    sumA += a[i] * value;
-    sumB += b[i] * value;
-    sumC += c[i] * value;
-    sumD += d[i] * value;
+    sumA += rows[a + i] * value;
+    sumB += rows[b + i] * value;
+    sumC += rows[c + i] * value;
+    sumD += rows[d + i] * value;
   }
   out[outStart] = sumA;
   out[outStart + 1] = sumB;

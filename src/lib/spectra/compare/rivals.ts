@@ -1,13 +1,11 @@
 import { centredUnit, withinUnit } from './correlation';
-import { dotProducts } from './dotProducts';
+import { interleavedDots, interleaveRows, type InterleavedRows } from './interleavedRows';
 
-/** A library ready for comparison: every row centred and of unit length, so that r is a dot product. */
-export interface RivalMatrix {
-  readonly count: number;
-  readonly points: number;
-  /** Row-major, count x points. A constant spectrum is a row of zeros: it correlates with nothing. */
-  readonly rows: Float64Array;
-}
+/**
+ * A library ready for comparison: every row centred and of unit length, so that r is a dot product. A constant
+ * spectrum is a row of zeros: it correlates with nothing.
+ */
+export type RivalMatrix = InterleavedRows;
 
 export interface RivalScore {
   /** Row of the library matrix. */
@@ -21,24 +19,16 @@ export interface RivalScore {
  */
 export function packRivals(spectra: readonly Float64Array[]): RivalMatrix {
   const points = spectra.length === 0 ? 0 : spectra[0].length;
-  const rows = new Float64Array(spectra.length * points);
-  spectra.forEach((spectrum, index) => {
-    if (spectrum.length !== points) {
-      throw new RangeError(`packRivals: row ${index} has ${spectrum.length} points, not ${points}`);
-    }
-    const unit = centredUnit(spectrum);
-    if (unit !== null) rows.set(unit, index * points);
-  });
-  return { count: spectra.length, points, rows };
+  const units = spectra.map((spectrum) => centredUnit(spectrum) ?? new Float64Array(spectrum.length));
+  return interleaveRows(units, points);
 }
 
 /** Correlation of a scan with every row, in row order. A constant scan gives zeros. */
 export function rivalCorrelations(scan: Float64Array, matrix: RivalMatrix): Float64Array {
-  const result = new Float64Array(matrix.count);
-  if (matrix.count === 0) return result;
+  if (matrix.count === 0) return new Float64Array(0);
   const unit = centredUnit(scan);
-  if (unit === null) return result;
-  dotProducts(matrix.rows, matrix.points, unit, result, 0, matrix.count);
+  if (unit === null) return new Float64Array(matrix.count);
+  const result = interleavedDots(matrix, unit);
   for (let i = 0; i < result.length; i++) result[i] = withinUnit(result[i]);
   return result;
 }

@@ -1,12 +1,12 @@
-import { dot, dotProducts } from '../compare/dotProducts';
+import { dot } from '../compare/dotProducts';
+import { interleavedDots, interleaveRows, type InterleavedRows } from '../compare/interleavedRows';
 import type { PackedClassModel } from './distances';
 
 /** Many class models of one axis, stacked so that all their scores are one matrix-vector product. */
 export interface ModelStack {
   readonly count: number;
-  readonly points: number;
-  /** Row-major. For each model its mean, then its loadings. */
-  readonly rows: Float64Array;
+  /** For each model its mean, then its loadings. */
+  readonly rows: InterleavedRows;
   /** First row of each model; one more entry than models. */
   readonly firstRow: Int32Array;
   /** For each row: mean . mean for a mean, loading . mean for a loading. */
@@ -25,20 +25,20 @@ export function stackModels(models: readonly PackedClassModel[]): ModelStack {
     firstRow[m + 1] = firstRow[m] + 1 + model.loadings.length;
   });
   const rowCount = firstRow[models.length];
-  const rows = new Float64Array(rowCount * points);
+  const rows: Float64Array[] = [];
   const atMean = new Float64Array(rowCount);
   const eigenvalues = new Float64Array(rowCount);
   models.forEach((model, m) => {
     const first = firstRow[m];
-    rows.set(model.mean, first * points);
+    rows.push(model.mean);
     atMean[first] = dot(model.mean, model.mean);
     model.loadings.forEach((loading, k) => {
-      rows.set(loading, (first + 1 + k) * points);
+      rows.push(loading);
       atMean[first + 1 + k] = dot(loading, model.mean);
       eigenvalues[first + 1 + k] = model.eigenvalues[k];
     });
   });
-  return { count: models.length, points, rows, firstRow, atMean, eigenvalues };
+  return { count: models.length, rows: interleaveRows(rows, points), firstRow, atMean, eigenvalues };
 }
 
 /**
@@ -51,12 +51,11 @@ export function stackDistances(
   stack: ModelStack,
   spectrum: Float64Array
 ): { t2: Float64Array; q: Float64Array } {
-  const { count, points, firstRow, atMean, eigenvalues } = stack;
+  const { count, firstRow, atMean, eigenvalues } = stack;
   const t2 = new Float64Array(count);
   const q = new Float64Array(count);
   if (count === 0) return { t2, q };
-  const products = new Float64Array(firstRow[count]);
-  dotProducts(stack.rows, points, spectrum, products, 0, products.length);
+  const products = interleavedDots(stack.rows, spectrum);
   const square = dot(spectrum, spectrum);
   for (let m = 0; m < count; m++) {
     const first = firstRow[m];
