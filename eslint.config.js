@@ -156,9 +156,14 @@ export default ts.config(
     rules: { 'no-restricted-syntax': ['error', TRANSACTION, ...ROLE_COMPARISONS] }
   },
   {
-    files: ['src/routes/**', 'src/hooks.server.ts'],
+    files: ['src/routes/**'],
+    rules: { 'no-restricted-syntax': ['error', TRANSACTION, ...ROLE_COMPARISONS] }
+  },
+  {
+    files: SERVER_ROUTES,
     rules: { 'no-restricted-syntax': ['error', TRANSACTION, STATEMENTS, ...ROLE_COMPARISONS] }
   },
+  { files: ['**/*.cjs'], rules: { '@typescript-eslint/no-require-imports': 'off' } },
 
   floor(
     ['src/lib/spectra/**'],

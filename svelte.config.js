@@ -24,7 +24,12 @@ export default {
     },
     typescript: {
       config: (config) => {
-        config.include.push('../tests/**/*.ts', '../scripts/**/*.ts', '../reference/**/*.ts', '../*.config.ts');
+        config.include.push(
+          '../tests/**/*.ts',
+          '../scripts/**/*.ts',
+          '../reference/**/*.ts',
+          '../*.config.ts'
+        );
         return config;
       }
     }
