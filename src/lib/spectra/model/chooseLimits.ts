@@ -5,8 +5,7 @@ import { jacksonMudholkarLimit, t2Limit } from './limits';
 
 /** What the choice of a limit's form depends on. */
 export interface LimitEvidence {
-  /** References, and the sources (lots, instruments) they come from. */
-  readonly n: number;
+  /** Sources (lots, instruments) the references come from: what counts as independent. */
   readonly sourceCount: number;
   readonly components: number;
   readonly residualEigenvalues: ArrayLike<number>;
@@ -30,13 +29,13 @@ const FEW_FORM = 'data-driven chi-squared, few references';
  * references each judged by a model that has not seen its source, with allowance for their small number.
  */
 export function chooseLimits(evidence: LimitEvidence, significance: number): ClassLimits {
-  const { n, sourceCount, components, heldOut } = evidence;
+  const { sourceCount, components, heldOut } = evidence;
   const fForm = sourceCount - components >= 10;
   const jacksonMudholkar = sourceCount >= Math.max(30, 25 * components);
   return {
     significance,
     t2: fForm
-      ? t2Limit(T2_FORM, n, components, significance)
+      ? t2Limit(T2_FORM, sourceCount, components, significance)
       : fewDistancesLimit(heldOut.t2, sourceCount, significance),
     t2Form: fForm ? T2_FORM : FEW_FORM,
     q: jacksonMudholkar

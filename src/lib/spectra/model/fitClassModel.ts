@@ -48,7 +48,7 @@ export function fitClassModel(rows: readonly Float64Array[], options: ClassModel
   if (kept < 1) throw new RangeError('The references are too alike: they show no spread to model.');
   const heldOut = bySource ? leaveSourceOut(fit, sources, kept) : leaveOneOut(fit, kept);
   const residualEigenvalues = Array.from(fit.eigenvalues.subarray(kept));
-  const evidence = { n, sourceCount: folds.length, components: kept, residualEigenvalues, heldOut };
+  const evidence = { sourceCount: folds.length, components: kept, residualEigenvalues, heldOut };
   const limits = chooseLimits(evidence, options.significance);
   const model: ClassModel = {
     mean: Array.from(fit.mean),
