@@ -292,9 +292,9 @@ ALTER TABLE method_versions ENABLE ALWAYS TRIGGER check_version;
 -- What a version is built on is settled once it is no draft.
 CREATE FUNCTION check_version_reference() RETURNS trigger LANGUAGE plpgsql SET search_path = pg_catalog, public, pg_temp AS $$
 DECLARE
-  version uuid := CASE TG_OP WHEN 'DELETE' THEN OLD.method_version_id ELSE NEW.method_version_id END;
+  version_id uuid := CASE TG_OP WHEN 'DELETE' THEN OLD.method_version_id ELSE NEW.method_version_id END;
 BEGIN
-  IF TG_OP = 'UPDATE' OR (SELECT status FROM method_versions WHERE id = version FOR SHARE) <> 'draft' THEN
+  IF TG_OP = 'UPDATE' OR (SELECT status FROM method_versions WHERE id = version_id FOR SHARE) <> 'draft' THEN
     RAISE EXCEPTION 'the references of a method version change only while it is a draft' USING ERRCODE = 'restrict_violation';
   END IF;
   RETURN CASE TG_OP WHEN 'DELETE' THEN OLD ELSE NEW END;

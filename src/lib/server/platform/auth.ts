@@ -94,13 +94,20 @@ export async function signInWithForm(event: RequestEvent, form: FormData): Promi
   try {
     await signIn(withForm(event, asked));
   } catch (thrown) {
-    if (isRedirect(thrown)) return 'signed-in';
+    if (isRedirect(thrown)) return signedIn(event);
     if (thrown instanceof Error && 'type' in thrown && thrown.type === 'CredentialsSignin') {
       await countGuess(address);
       return 'wrong';
     }
     throw thrown;
   }
+  return signedIn(event);
+}
+
+/** The library remembers where to go in a cookie of its own; we do not need it. */
+function signedIn(event: RequestEvent): 'signed-in' {
+  event.cookies.delete('authjs.callback-url', { path: '/' });
+  event.cookies.delete('__Secure-authjs.callback-url', { path: '/', secure: true });
   return 'signed-in';
 }
 

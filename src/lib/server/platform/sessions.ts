@@ -32,7 +32,8 @@ export interface LiveSession {
   readonly person: ActingPerson;
 }
 
-type Row = {
+/** A person as the queries by token return them. */
+export type PersonRow = {
   id: string;
   printed_name: string;
   user_name: string;
@@ -49,7 +50,7 @@ type Row = {
  */
 export async function touchSession(db: Executor, token: string): Promise<LiveSession | null> {
   const sessionKey = tokenKey(token);
-  const [row] = await db.execute<Row>(sql`
+  const [row] = await db.execute<PersonRow>(sql`
     update sessions s set last_seen_at = clock_timestamp()
     from users u join sites si on si.id = u.site_id
     where s.token_hash = ${sessionKey}
@@ -61,19 +62,18 @@ export async function touchSession(db: Executor, token: string): Promise<LiveSes
     returning u.id, u.printed_name, u.user_name, u.site_id, si.time_zone, si.demo,
       (select array_agg(g.role order by g.role) from role_grants g where g.user_id = u.id and g.ended_at is null) as roles`);
   if (!row) return null;
-  return {
-    sessionKey,
-    person: {
-      id: row.id,
-      printedName: row.printed_name,
-      userName: row.user_name,
-      roles: row.roles ?? [],
-      siteId: row.site_id,
-      timeZone: row.time_zone,
-      demo: row.demo
-    }
-  };
+  return { sessionKey, person: personOf(row) };
 }
+
+export const personOf = (row: PersonRow): ActingPerson => ({
+  id: row.id,
+  printedName: row.printed_name,
+  userName: row.user_name,
+  roles: row.roles ?? [],
+  siteId: row.site_id,
+  timeZone: row.time_zone,
+  demo: row.demo
+});
 
 /** Ends a session for good; false where it had ended already. */
 export async function endSession(tx: Executor, sessionKey: string, why: string): Promise<boolean> {
