@@ -1,7 +1,7 @@
 /**
  * Equal-length rows stored four abreast: for each group of four rows, the first point of all four, then the
  * second point of all four, and so on. One dot product of every row with a vector then reads memory in a
- * single ascending stream, which is as fast as this machine can read at all; rows one after the other are not.
+ * single ascending stream, about as fast as memory can be read at all; four rows far apart are slower.
  */
 export interface InterleavedRows {
   readonly count: number;

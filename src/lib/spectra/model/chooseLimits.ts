@@ -21,7 +21,7 @@ const FEW_FORM = 'data-driven chi-squared, few references';
  *
  * A model fits its own references more closely than the next lot, the more so the fewer there are. A limit
  * taken from the fitted references themselves therefore turns genuine material away: simulated with 8
- * references and 2 components, Jackson-Mudholkar at 1 % rejects 15 % of genuine new spectra, at 50 just over 1 %.
+ * references and 2 components, Jackson-Mudholkar at 1 % rejects 15 % of genuine new spectra, at 50 between 1 and 2 %.
  * So the theoretical forms are used where they are sound, judged by independent sources rather than replicates:
  * - T2: the F form for a new spectrum once sources exceed components by 10;
  * - Q: Jackson-Mudholkar from 25 sources per component, at least 30.
