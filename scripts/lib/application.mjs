@@ -78,17 +78,14 @@ export async function startMailCatcher({ root, port, folder }) {
  */
 export function demoAccountLines(file) {
   if (!existsSync(file)) return [];
-  const kept = JSON.parse(readFileSync(file, 'utf8'));
-  /** @type {Record<string, unknown>[]} */
-  const accounts = Array.isArray(kept) ? kept : (kept.accounts ?? []);
-  const rows = accounts.map((a) =>
-    [
-      a.userName ?? a.username ?? a.login ?? a.email,
-      a.password,
-      a.printedName ?? a.name,
-      a.role ?? a.roles
-    ].map((v) => String(v ?? ''))
-  );
+  /** @type {{ userName: string, password: string, printedName: string, role: string }[]} */
+  const accounts = JSON.parse(readFileSync(file, 'utf8'));
+  const rows = accounts.map((account) => [
+    account.userName,
+    account.password,
+    account.printedName,
+    account.role
+  ]);
   const widths = [0, 1, 2].map((column) => Math.max(0, ...rows.map((row) => row[column].length)));
   return rows.map((row) =>
     `  ${row.map((cell, column) => cell.padEnd(widths[column] ?? 0)).join('  ')}`.trimEnd()
