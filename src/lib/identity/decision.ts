@@ -19,7 +19,8 @@ export type GateCode =
   | 'check-expired'
   | 'not-treatable';
 
-export type CriterionCode = 'correlation' | 'hotelling-t2' | 'q-residual' | 'best-match' | 'unexplained-bands' | 'missing-bands';
+export type CriterionCode =
+  'correlation' | 'hotelling-t2' | 'q-residual' | 'best-match' | 'unexplained-bands' | 'missing-bands';
 
 export interface QualityGate {
   readonly code: GateCode;
@@ -71,7 +72,12 @@ export interface Explanation {
   /** Best other materials, best first (at most five). */
   readonly rivals: readonly Rival[];
   /** Non-negative least-squares shares; an indication only. */
-  readonly mixture: readonly { readonly itemCode: string; readonly name: string; readonly share: number; readonly standardError: number }[];
+  readonly mixture: readonly {
+    readonly itemCode: string;
+    readonly name: string;
+    readonly share: number;
+    readonly standardError: number;
+  }[];
 }
 
 export interface Decision {

@@ -40,12 +40,19 @@ export interface FittedMethod {
   /** Axis after the recipe, cm-1. */
   readonly gridCm1: readonly number[];
   /** Reference means at each MSC point of the recipe, in order (empty where there is none). */
-  readonly stepReferences: readonly { readonly shiftCm1: readonly number[]; readonly intensity: readonly number[] }[];
+  readonly stepReferences: readonly {
+    readonly shiftCm1: readonly number[];
+    readonly intensity: readonly number[];
+  }[];
   readonly model: ClassModel;
   /** Conformal scores of the held-out references (nonconformity, ascending). */
   readonly heldOutNonconformity: readonly number[];
   /** Bands of the reference mean before the derivative, for explanation: position cm-1, relative height. */
-  readonly bands: readonly { readonly shiftCm1: number; readonly relativeHeight: number; readonly fwhmCm1: number }[];
+  readonly bands: readonly {
+    readonly shiftCm1: number;
+    readonly relativeHeight: number;
+    readonly fwhmCm1: number;
+  }[];
   /** Mean reference before derivative/scaling (baseline-corrected, unit height), on `displayGridCm1`, for plots and explanation. */
   readonly displayGridCm1: readonly number[];
   readonly displayMean: readonly number[];

@@ -1,0 +1,42 @@
+import { crossValidateComponents } from '../spectra/model/crossValidateComponents';
+import { DEFAULT_RECIPE } from '../spectra/preprocess/recipe';
+import { applySteps } from '../spectra/preprocess/steps';
+import { suggestMinCorrelation } from './fitMethod';
+import type { LabelledReference, MethodDefinition } from './method';
+
+/** Most components suggested: more than this and a class model begins to explain contaminants too. */
+const MOST_COMPONENTS = 6;
+
+/** A definition that suits ordinary powders and these references; a method owner starts from it. */
+export function suggestDefinition(
+  references: readonly LabelledReference[],
+  excitationNm: number
+): MethodDefinition {
+  const draft: MethodDefinition = {
+    excitationNm,
+    excitationToleranceNm: 1,
+    recipe: DEFAULT_RECIPE,
+    criteria: {
+      minCorrelation: 0.9,
+      guardBand: 0.02,
+      significance: 0.01,
+      components: 3,
+      rivalGap: 0.02,
+      minSignalToNoise: 15,
+      maxUnexplainedBand: 0.12
+    },
+    correctAxis: true,
+    shiftSearchCm1: 1
+  };
+  const sources = references.map((reference) => reference.source);
+  const minCorrelation = suggestMinCorrelation(draft, references);
+  let components = 3;
+  if (new Set(sources).size >= 2 && references.length >= 5) {
+    const rows = references.map((reference) => applySteps(reference.spectrum, draft.recipe).intensity);
+    components = Math.max(
+      3,
+      Math.min(MOST_COMPONENTS, crossValidateComponents(rows, sources, MOST_COMPONENTS).suggested + 2)
+    );
+  }
+  return { ...draft, criteria: { ...draft.criteria, minCorrelation, components } };
+}
