@@ -266,17 +266,15 @@ describe('lots and dispositions', () => {
 
   it('begin undecided', async () => {
     const { deliveryId, materialId, manufacturerId } = plant;
-    const inserting = base.db
-      .insert(lots)
-      .values({
-        lotNumber: 'L-BAD',
-        deliveryId,
-        materialId,
-        manufacturerId,
-        manufacturerBatch: 'B',
-        containerCount: 1,
-        status: 'released'
-      });
+    const inserting = base.db.insert(lots).values({
+      lotNumber: 'L-BAD',
+      deliveryId,
+      materialId,
+      manufacturerId,
+      manufacturerBatch: 'B',
+      containerCount: 1,
+      status: 'released'
+    });
     expect(await answerTo(inserting)).toContain('begins undecided');
   });
 
@@ -340,15 +338,13 @@ describe('lots and dispositions', () => {
     const lot = await makeLot(base.db, plant);
     await transact(base.db, async (tx) => {
       const signed = await signature(tx, fixtures.people.approver, 'lot.release', 'rejected', 'lot', lot.id);
-      await tx
-        .insert(dispositions)
-        .values({
-          lotId: lot.id,
-          outcome: 'reject',
-          reason: 'a test',
-          signatureId: signed.id,
-          decidedAt: new Date('2001-01-01')
-        });
+      await tx.insert(dispositions).values({
+        lotId: lot.id,
+        outcome: 'reject',
+        reason: 'a test',
+        signatureId: signed.id,
+        decidedAt: new Date('2001-01-01')
+      });
       await tx.update(lots).set({ status: 'rejected' }).where(eq(lots.id, lot.id));
     });
     const [row] = await base.db.select().from(dispositions).where(eq(dispositions.lotId, lot.id));
@@ -359,14 +355,12 @@ describe('lots and dispositions', () => {
 describe('grants and requests', () => {
   it('R-005: nobody grants a role to themselves, and a grant only ends, once', async () => {
     const { administrator, operator } = fixtures.people;
-    const own = base.db
-      .insert(roleGrants)
-      .values({
-        userId: administrator.id,
-        role: 'approver',
-        grantedBy: administrator.id,
-        reason: 'would like to'
-      });
+    const own = base.db.insert(roleGrants).values({
+      userId: administrator.id,
+      role: 'approver',
+      grantedBy: administrator.id,
+      reason: 'would like to'
+    });
     expect(await answerTo(own)).toContain('role_grants_not_own');
     const endIt = (reason: string) =>
       base.db
