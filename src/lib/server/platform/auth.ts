@@ -3,6 +3,7 @@ import Credentials from '@auth/sveltekit/providers/credentials';
 import { isRedirect, type RequestEvent } from '@sveltejs/kit';
 import { SESSION_ABSOLUTE_HOURS } from '../../domain/accounts';
 import { database } from '../db/client';
+import { authSecret } from './env';
 import { guessesLeft, countGuess } from './guessLimit';
 import { log } from './log';
 import { touchSession, type LiveSession } from './sessions';
@@ -18,6 +19,7 @@ export const SESSION_COOKIE = '__Host-wharfinger';
  */
 const configure = (event: RequestEvent): SvelteKitAuthConfig => ({
   trustHost: true,
+  secret: authSecret(),
   pages: { signIn: '/signin', error: '/signin' },
   session: { strategy: 'jwt', maxAge: SESSION_ABSOLUTE_HOURS * 3600 },
   cookies: {

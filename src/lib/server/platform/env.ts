@@ -3,6 +3,8 @@ const read = (name: string): string | undefined => process.env[name] || undefine
 
 /** PEM file of the Ed25519 key that signs tree heads; kept apart from the database. */
 export const trailKeyFile = () => read('TRAIL_KEY_FILE');
+/** Secret of the sign-in library. */
+export const authSecret = () => read('AUTH_SECRET');
 /** File outside the database to which every tree head is appended. */
 export const trailHeadsFile = () => read('TRAIL_HEADS_FILE');
 export const smtpUrl = () => read('SMTP_URL');

@@ -1,3 +1,4 @@
+import { setTimeout as delay } from 'node:timers/promises';
 import { and, eq, isNull, lt, or, sql } from 'drizzle-orm';
 import { LOCK_MINUTES, SIGN_IN_ATTEMPTS } from '../../domain/accounts';
 import type { Database, Transaction } from '../db/client';
@@ -33,12 +34,22 @@ interface Account {
   readonly locked: boolean;
 }
 
+/** A wrong sign-in is answered at the next of these beats after it came, whatever had to be done for it. */
+const BEAT_MS = 250;
+
 /**
  * Opens a session for the right user name and password and returns its token; null for everything else, the same
  * in answer and work: no such account, wrong password, locked, disabled. Five wrong passwords in a row lock the
  * account for a quarter of an hour, with a mail to the administrators. All of it is on the trail.
  */
 export async function signInWithPassword(db: Database, claim: SignInClaim): Promise<string | null> {
+  const cameAt = performance.now();
+  const token = await tryPassword(db, claim);
+  if (token === null) await delay(BEAT_MS - ((performance.now() - cameAt) % BEAT_MS));
+  return token;
+}
+
+async function tryPassword(db: Database, claim: SignInClaim): Promise<string | null> {
   const account = await findAccount(db, claim.userName);
   const passwordRight = await verifyPassword(account?.passwordHash, claim.password);
   const codeStep = account ? secondFactorStep(account, claim.oneTimeCode ?? '') : null;
