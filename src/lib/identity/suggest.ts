@@ -15,7 +15,7 @@ export function suggestDefinition(
   const draft: MethodDefinition = {
     excitationNm,
     excitationToleranceNm: 1,
-    recipe: DEFAULT_RECIPE,
+    recipe: recipeFor(references),
     criteria: {
       minCorrelation: 0.9,
       guardBand: 0.02,
@@ -39,4 +39,27 @@ export function suggestDefinition(
     );
   }
   return { ...draft, criteria: { ...draft.criteria, minCorrelation, components } };
+}
+
+/** Room left at each end for an instrument's axis correction, cm-1. */
+const END_ROOM_CM1 = 5;
+
+/** The default recipe with its grid drawn in to what all references cover. */
+function recipeFor(references: readonly LabelledReference[]): MethodDefinition['recipe'] {
+  const from = Math.max(...references.map(({ spectrum }) => spectrum.shiftCm1[0])) + END_ROOM_CM1;
+  const to =
+    Math.min(...references.map(({ spectrum }) => spectrum.shiftCm1[spectrum.shiftCm1.length - 1])) -
+    END_ROOM_CM1;
+  return DEFAULT_RECIPE.map((step) => {
+    if (step.name !== 'resample') return step;
+    const { fromCm1, toCm1 } = step.options as { fromCm1: number; toCm1: number };
+    return {
+      ...step,
+      options: {
+        ...step.options,
+        fromCm1: Math.max(fromCm1, Math.ceil(from)),
+        toCm1: Math.min(toCm1, Math.floor(to))
+      }
+    };
+  });
 }
