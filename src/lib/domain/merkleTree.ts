@@ -34,8 +34,8 @@ export const nodeHash = (sha256: Sha256, left: Hash, right: Hash): Hash => sha25
 export const sameHash = (a: Hash, b: Hash): boolean =>
   a.length === b.length && a.every((byte, index) => byte === b[index]);
 
-/** Largest power of two below n (n > 1). */
-function splitPoint(n: number): number {
+/** Where a tree of n leaves splits: the largest power of two below n (n > 1). */
+export function splitPoint(n: number): number {
   let k = 1;
   while (k * 2 < n) k *= 2;
   return k;
