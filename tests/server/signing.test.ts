@@ -1,7 +1,8 @@
 import { eq } from 'drizzle-orm';
 import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { canonicalJson } from '$lib/identity/canonicalJson';
-import { sessions, signatures, trailEntries, users } from '$lib/server/db/schema';
+import type { users } from '$lib/server/db/schema';
+import { sessions, signatures, trailEntries } from '$lib/server/db/schema';
 import { transact } from '$lib/server/db/transaction';
 import type { Act } from '$lib/server/platform/act';
 import { systemAct } from '$lib/server/platform/act';
