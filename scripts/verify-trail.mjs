@@ -15,10 +15,11 @@ import { createHash, createPublicKey, verify } from 'node:crypto';
 import { createReadStream, existsSync, readFileSync, realpathSync } from 'node:fs';
 import { createInterface } from 'node:readline';
 import { fileURLToPath } from 'node:url';
+import { parseArgs } from 'node:util';
 
 /**
  * @typedef {{ size: number, rootHash: string, at: string, keyId: string, signature: string, publicKey: string | null }} Head
- * @typedef {{ ok: boolean, entries: number, scope: string, keyId: string, head: Head | null, faults: string[] }} Result
+ * @typedef {{ ok: boolean, entries: number, scope: string, head: Head | null, faults: string[] }} Result
  * @typedef {{ heads?: Head[], key?: string, onEntry?: (entry: Record<string, unknown>) => void }} Options
  */
 
@@ -27,7 +28,8 @@ const sha256 = (/** @type {(Buffer | Uint8Array)[]} */ ...parts) =>
 const leafOf = (/** @type {string} */ content) => sha256(Buffer.of(0), Buffer.from(content));
 const nodeOf = (/** @type {Buffer} */ left, /** @type {Buffer} */ right) => sha256(Buffer.of(1), left, right);
 const half = (/** @type {number} */ n) => Math.floor(n / 2);
-const isHash = (/** @type {unknown} */ text) => typeof text === 'string' && /^[0-9a-f]{64}$/.test(text);
+const hashPattern = /^[0-9a-f]{64}$/;
+const isHash = (/** @type {unknown} */ text) => typeof text === 'string' && hashPattern.test(text);
 const isCount = (/** @type {unknown} */ n) => Number.isSafeInteger(n) && Number(n) >= 0;
 
 /** A tree that remembers its right edge only. */
@@ -45,11 +47,9 @@ class Tree {
     this.edge.push(node);
   }
   root() {
-    if (this.edge.length === 0) return sha256(Buffer.alloc(0)).toString('hex');
-    return this.edge
-      .map((node) => node.hash)
-      .reduceRight((right, left) => nodeOf(left, right))
-      .toString('hex');
+    const hashes = this.edge.map((node) => node.hash);
+    const root = hashes.length === 0 ? sha256() : hashes.reduceRight((right, left) => nodeOf(left, right));
+    return root.toString('hex');
   }
 }
 
@@ -80,9 +80,8 @@ function signatureFault(head, publicKey) {
   const text = `wharfinger tree head v1\n${head.size}\n${head.rootHash}\n${head.at}\n${head.keyId}\n`;
   try {
     const key = createPublicKey({ key: Buffer.from(publicKey, 'base64'), format: 'der', type: 'spki' });
-    return verify(null, Buffer.from(text), key, Buffer.from(head.signature, 'base64'))
-      ? null
-      : 'has a signature that is not right';
+    const right = verify(null, Buffer.from(text), key, Buffer.from(head.signature, 'base64'));
+    return right ? null : 'has a signature that is not right';
   } catch {
     return 'has a key that cannot be read';
   }
@@ -101,132 +100,134 @@ function parsed(line) {
 
 /** @param {unknown} value @returns {value is Head} */
 function isHead(value) {
-  const head = /** @type {Head} */ (value);
-  return (
-    typeof head === 'object' &&
-    head !== null &&
-    isCount(head.size) &&
-    isHash(head.rootHash) &&
-    [head.at, head.keyId, head.signature].every((text) => typeof text === 'string')
-  );
+  if (typeof value !== 'object' || value === null) return false;
+  const { size, rootHash, at, keyId, signature } = /** @type {Head} */ (value);
+  const texts = [at, keyId, signature].every((text) => typeof text === 'string');
+  return texts && isCount(size) && isHash(rootHash);
+}
+
+/** One reading of an export: fed line by line, it gathers what is not right. */
+class ExportCheck {
+  tree = new Tree();
+  digest = createHash('sha256');
+  /** @type {string[]} */
+  faults = [];
+  /** @type {Head | null} */
+  head = null;
+  scope = '';
+  entries = 0;
+  lastIndex = -1;
+  ended = false;
+
+  /** @param {Options} options */
+  constructor({ heads = [], key, onEntry }) {
+    this.heads = heads;
+    this.bySize = new Map(heads.map((head) => [head.size, head]));
+    this.key = key;
+    this.onEntry = onEntry;
+  }
+
+  fault(/** @type {string} */ sentence) {
+    if (this.faults.length < 20) this.faults.push(sentence);
+  }
+
+  read(/** @type {string} */ line, /** @type {number} */ number) {
+    const value = parsed(line);
+    if (number === 1) this.readHeader(value);
+    else if (this.ended) this.fault(`Line ${number} stands after the end.`);
+    else if (value?.kind === 'entry' && this.head) this.readEntry(value, number, this.head);
+    else if (value?.kind === 'end') this.readEnd(value);
+    else this.fault(`Line ${number} is not a line of an exported audit trail.`);
+    if (!this.ended) this.digest.update(`${line}\n`);
+  }
+
+  readHeader(/** @type {Record<string, any> | null} */ value) {
+    const known = value?.kind === 'wharfinger-trail-export' && value.version === 1 && isHead(value.head);
+    if (!known || !['whole', 'selection'].includes(value.scope)) {
+      return this.fault('This is no exported audit trail, or its first line was changed.');
+    }
+    this.head = value.head;
+    this.scope = value.scope;
+  }
+
+  /** @param {Record<string, any>} value @param {number} number @param {Head} head */
+  readEntry({ content, leafIndex, proof }, number, head) {
+    this.entries += 1;
+    const entry = readContent(content);
+    const name = entry ? `Entry ${entry.id}` : `The entry in line ${number}`;
+    if (!entry) return this.fault(`${name} has no readable content.`);
+    this.onEntry?.(entry);
+    const next = this.lastIndex + 1;
+    if (!isCount(leafIndex) || leafIndex < next) this.fault(`${name} is out of order.`);
+    else if (this.scope === 'whole' && leafIndex > next)
+      this.fault(`Leaf ${next} before ${name} is missing.`);
+    this.lastIndex = leafIndex;
+    const leaf = leafOf(content);
+    if (this.scope === 'whole') return this.grow(leaf);
+    if (!Array.isArray(proof) || !isIncluded(leaf, leafIndex, head.size, proof, head.rootHash)) {
+      this.fault(`${name} was changed: its proof does not lead to the signed root.`);
+    }
+  }
+
+  grow(/** @type {Buffer} */ leaf) {
+    this.tree.append(leaf);
+    const kept = this.bySize.get(this.tree.size);
+    if (kept && kept.rootHash !== this.tree.root()) {
+      this.fault(`The first ${kept.size} entries are not those of the tree head kept elsewhere.`);
+    }
+  }
+
+  readEnd(/** @type {Record<string, any>} */ value) {
+    this.ended = true;
+    const { entries } = this;
+    if (value.entries !== entries) this.fault(`It tells of ${value.entries} entries; here are ${entries}.`);
+    if (value.sha256 !== this.digest.digest('hex'))
+      this.fault('The lines differ from those written (SHA-256).');
+  }
+
+  /** @returns {Result} */
+  result() {
+    const { head, entries, scope } = this;
+    if (head) this.checkHead(head);
+    else if (this.faults.length === 0) this.fault('The file is empty.');
+    if (head && !this.ended) this.fault('The export ends before its last line: it was cut short.');
+    return { ok: this.faults.length === 0, entries, scope, head, faults: this.faults };
+  }
+
+  checkHead(/** @type {Head} */ head) {
+    const whole = this.scope === 'whole';
+    const { size } = this.tree;
+    if (whole && size !== head.size) this.fault(`The head tells of ${head.size} entries; here are ${size}.`);
+    else if (whole && this.tree.root() !== head.rootHash) this.fault('The entries differ from those sealed.');
+    const publicKey = this.key ?? head.publicKey;
+    const wrong = publicKey ? signatureFault(head, publicKey) : 'needs its public key: give it with --key';
+    if (wrong) this.fault(`The tree head ${wrong}.`);
+    for (const kept of this.heads) {
+      const faulty = kept.publicKey && signatureFault(kept, kept.publicKey);
+      if (faulty) this.fault(`The tree head kept elsewhere of ${kept.at} ${faulty}.`);
+      if (whole && kept.size > size)
+        this.fault(`A tree head kept elsewhere tells of ${kept.size} entries: the end is missing.`);
+      if (!whole && kept.size === head.size && kept.rootHash !== head.rootHash)
+        this.fault(`The tree head differs from that kept elsewhere of ${kept.at}.`);
+    }
+  }
 }
 
 /**
- * Checks an export, line by line.
+ * Checks an export.
  * @param {AsyncIterable<string> | Iterable<string>} lines without their line feeds @param {Options} [options]
  * @returns {Promise<Result>}
  */
-export async function verifyExport(lines, { heads = [], key, onEntry } = {}) {
-  /** @type {string[]} */
-  const faults = [];
-  const fault = (/** @type {string} */ sentence) => void (faults.length < 20 && faults.push(sentence));
-  const tree = new Tree();
-  const digest = createHash('sha256');
-  const sizes = new Map(heads.map((head) => [head.size, head]));
-  /** @type {Head | null} */
-  let head = null;
-  let scope = '';
-  let entries = 0;
-  let lastIndex = -1;
-  let ended = false;
+export async function verifyExport(lines, options = {}) {
+  const check = new ExportCheck(options);
   let number = 0;
-  for await (const line of lines) {
-    number += 1;
-    if (ended) {
-      fault(`Line ${number} stands after the end.`);
-      break;
-    }
-    const value = parsed(line);
-    if (number === 1) {
-      if (
-        value?.kind !== 'wharfinger-trail-export' ||
-        value.version !== 1 ||
-        !['whole', 'selection'].includes(value.scope) ||
-        !isHead(value.head)
-      ) {
-        return {
-          ok: false,
-          entries: 0,
-          scope: '',
-          keyId: '',
-          head: null,
-          faults: ['The file is not an exported audit trail, or its first line was changed.']
-        };
-      }
-      ({ head, scope } = /** @type {{ head: Head, scope: string }} */ (value));
-    } else if (value?.kind === 'entry' && head) {
-      entries += 1;
-      checkEntry(value, number, head);
-    } else if (value?.kind === 'end') {
-      ended = true;
-      if (value.entries !== entries)
-        fault(`The export says that it holds ${value.entries} entries; it holds ${entries}.`);
-      if (value.sha256 !== digest.digest('hex'))
-        fault('The lines of the export are not those that were written: its SHA-256 differs.');
-      continue;
-    } else {
-      fault(`Line ${number} is not a line of an exported audit trail.`);
-    }
-    digest.update(`${line}\n`);
-  }
-  if (!head)
-    return { ok: false, entries: 0, scope: '', keyId: '', head: null, faults: ['The file is empty.'] };
-  if (!ended) fault('The export ends before its last line: it was cut short.');
-  checkHead(head);
-  return { ok: faults.length === 0, entries, scope, keyId: head.keyId, head, faults };
-
-  /** @param {Record<string, any>} value @param {number} at @param {Head} under */
-  function checkEntry(value, at, under) {
-    const content = typeof value.content === 'string' ? value.content : '';
-    const entry = readContent(content);
-    const name = entry ? `Entry ${entry.id}` : `The entry in line ${at}`;
-    if (!entry) fault(`${name} has no readable content.`);
-    else onEntry?.(entry);
-    if (!isCount(value.leafIndex) || value.leafIndex <= lastIndex) fault(`${name} is out of order.`);
-    else if (scope === 'whole' && value.leafIndex !== lastIndex + 1)
-      fault(`${name} does not follow the one before: leaf ${lastIndex + 1} is missing.`);
-    lastIndex = value.leafIndex;
-    const leaf = leafOf(content);
-    if (scope === 'selection') {
-      if (
-        !Array.isArray(value.proof) ||
-        !isIncluded(leaf, value.leafIndex, under.size, value.proof, under.rootHash)
-      )
-        fault(`${name} was changed, or is not of this trail: its proof does not lead to the signed root.`);
-      return;
-    }
-    tree.append(leaf);
-    const kept = sizes.get(tree.size);
-    if (kept && kept.rootHash !== tree.root())
-      fault(`The first ${kept.size} entries are not those of the tree head kept elsewhere of ${kept.at}.`);
-  }
-
-  /** @param {Head} under */
-  function checkHead(under) {
-    if (scope === 'whole') {
-      if (tree.size !== under.size)
-        fault(`The signed tree head tells of ${under.size} entries; the export holds ${tree.size}.`);
-      else if (tree.root() !== under.rootHash)
-        fault('The entries do not hash to the signed root: at least one was changed.');
-    }
-    const publicKey = key ?? under.publicKey;
-    if (!publicKey) fault(`The export does not hold the public key ${under.keyId}: give it with --key.`);
-    else if (signatureFault(under, publicKey)) fault(`The tree head ${signatureFault(under, publicKey)}.`);
-    for (const kept of heads) {
-      if (kept.publicKey && signatureFault(kept, kept.publicKey))
-        fault(`The tree head kept elsewhere of ${kept.at} ${signatureFault(kept, kept.publicKey)}.`);
-      if (scope === 'whole' && kept.size > tree.size)
-        fault(
-          `A tree head kept elsewhere tells of ${kept.size} entries; the export holds ${tree.size}: its end is missing.`
-        );
-      if (scope === 'selection' && kept.size === under.size && kept.rootHash !== under.rootHash)
-        fault(`The tree head of the export is not the one kept elsewhere of ${kept.at}.`);
-    }
-  }
+  for await (const line of lines) check.read(line, (number += 1));
+  return check.result();
 }
 
-/** @param {string} content @returns {Record<string, unknown> | null} */
+/** @param {unknown} content @returns {Record<string, unknown> | null} */
 function readContent(content) {
+  if (typeof content !== 'string') return null;
   try {
     const value = JSON.parse(content);
     return value && typeof value === 'object' && 'id' in value ? value : null;
@@ -243,59 +244,44 @@ function sentence(entry) {
 
 /** @param {string} file @returns {Head[]} */
 function readHeadsFile(file) {
-  const heads = [];
-  for (const line of readFileSync(file, 'utf8').split('\n').filter(Boolean)) {
-    const head = parsed(line);
-    if (!isHead(head)) throw new Error(`${file} holds a line that is not a tree head`);
-    heads.push(head);
-  }
-  return heads;
+  return readFileSync(file, 'utf8')
+    .split('\n')
+    .filter(Boolean)
+    .map((line) => {
+      const head = parsed(line);
+      if (!isHead(head)) throw new Error(`${file} holds a line that is not a tree head`);
+      return head;
+    });
 }
 
-/** @param {string[]} words */
-async function main(words) {
-  const valueOf = (/** @type {string} */ flag) =>
-    words.includes(flag) ? words[words.indexOf(flag) + 1] : undefined;
-  const [file] = words.filter(
-    (word, index) => !word.startsWith('--') && !['--heads', '--key'].includes(words[index - 1])
-  );
-  if (!file || words.includes('--help')) {
-    console.error(
-      'node verify-trail.mjs EXPORT.ndjson [--heads TREE-HEADS.ndjson] [--key PUBLIC-KEY] [--list]'
-    );
-    return 2;
-  }
-  const keyWord = valueOf('--key');
-  const key = keyWord && existsSync(keyWord) ? readKeyFile(keyWord) : keyWord;
-  const headsFile = valueOf('--heads');
-  const heads = headsFile ? readHeadsFile(headsFile) : [];
-  const lines = createInterface({ input: createReadStream(file), crlfDelay: Infinity });
-  const onEntry = words.includes('--list')
-    ? (/** @type {Record<string, unknown>} */ entry) => console.log(sentence(entry))
-    : undefined;
-  const result = await verifyExport(lines, { heads, key, onEntry });
-  for (const found of result.faults) console.log(`NOT RIGHT: ${found}`);
-  if (result.ok) {
-    const what =
-      result.scope === 'whole'
-        ? `all ${result.entries} entries of the trail`
-        : `${result.entries} chosen entries of a trail of ${result.head?.size}`;
-    console.log(`RIGHT: ${what}, sealed at ${result.head?.at} under ${result.head?.rootHash}`);
-    console.log(`Signed with key ${result.keyId}${key ? '' : ': compare it with the one you were given'}.`);
-    if (heads.length === 0)
-      console.log(
-        'Compared with no tree head kept elsewhere: an end that was cut off before the export could not be seen (--heads).'
-      );
-  }
-  return result.ok ? 0 : 1;
+/** The key as given, or from a file in base64 or PEM. @param {string} given */
+function readKey(given) {
+  if (!existsSync(given)) return given;
+  const text = readFileSync(given, 'utf8').trim();
+  if (!text.startsWith('-----')) return text;
+  return createPublicKey(text).export({ type: 'spki', format: 'der' }).toString('base64');
 }
 
-/** A key file: base64, or PEM. @param {string} file */
-function readKeyFile(file) {
-  const text = readFileSync(file, 'utf8').trim();
-  return text.startsWith('-----')
-    ? createPublicKey(text).export({ type: 'spki', format: 'der' }).toString('base64')
-    : text;
+/** @param {string[]} args */
+async function main(args) {
+  const text = /** @type {const} */ ({ type: 'string' });
+  const options = { heads: text, key: text, list: /** @type {const} */ ({ type: 'boolean' }) };
+  const { values, positionals } = parseArgs({ args, allowPositionals: true, options });
+  if (positionals.length !== 1) throw new Error('name one exported file');
+  const heads = values.heads ? readHeadsFile(values.heads) : [];
+  const key = values.key ? readKey(values.key) : undefined;
+  const lines = createInterface({ input: createReadStream(positionals[0]), crlfDelay: Infinity });
+  const onEntry = (/** @type {Record<string, unknown>} */ entry) =>
+    values.list && console.log(sentence(entry));
+  const { ok, scope, entries, head, faults } = await verifyExport(lines, { heads, key, onEntry });
+  for (const found of faults) console.log(`NOT RIGHT: ${found}`);
+  if (!ok) return 1;
+  const all = scope === 'whole' ? `all ${entries} entries` : `${entries} chosen of ${head?.size} entries`;
+  console.log(`RIGHT: ${all}, sealed at ${head?.at} under ${head?.rootHash}`);
+  console.log(`Signed with key ${head?.keyId}${key ? '' : ': compare it with the one you were given'}.`);
+  if (heads.length === 0)
+    console.log('Compared with no other tree head (--heads): a cut end would not be seen.');
+  return 0;
 }
 
 if (process.argv[1] && realpathSync(process.argv[1]) === fileURLToPath(import.meta.url)) {
