@@ -96,21 +96,19 @@ export async function signInWithForm(event: RequestEvent, form: FormData): Promi
   try {
     await signIn(withForm(event, asked));
   } catch (thrown) {
-    if (isRedirect(thrown)) return signedIn(event);
-    if (thrown instanceof Error && 'type' in thrown && thrown.type === 'CredentialsSignin') {
-      await countGuess(address);
-      return 'wrong';
-    }
-    throw thrown;
+    const wrong = thrown instanceof Error && 'type' in thrown && thrown.type === 'CredentialsSignin';
+    if (wrong) await countGuess(address);
+    if (wrong) return 'wrong';
+    if (!isRedirect(thrown)) throw thrown;
   }
-  return signedIn(event);
+  forgetWhereTo(event);
+  return 'signed-in';
 }
 
 /** The library remembers where to go in a cookie of its own; we do not need it. */
-function signedIn(event: RequestEvent): 'signed-in' {
+function forgetWhereTo(event: RequestEvent): void {
   event.cookies.delete('authjs.callback-url', { path: '/' });
   event.cookies.delete('__Secure-authjs.callback-url', { path: '/', secure: true });
-  return 'signed-in';
 }
 
 /** Ends the session of the request's cookie and takes the cookie away. */
@@ -122,6 +120,7 @@ export async function signOutRequest(event: RequestEvent): Promise<void> {
     if (!isRedirect(thrown)) throw thrown;
   }
   event.cookies.delete(SESSION_COOKIE, { path: '/', secure: true });
+  forgetWhereTo(event);
 }
 
 // The library reads the form out of the request; ours has been read already.

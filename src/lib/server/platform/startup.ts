@@ -1,5 +1,5 @@
 import { closeDatabase, database } from '../db/client';
-import { databaseUrl, smtpUrl, trailHeadsFile, trailKeyFile } from './env';
+import { authSecret, databaseUrl, smtpUrl, trailHeadsFile, trailKeyFile } from './env';
 import { startJobs, type JobHandler } from './jobs';
 import { log } from './log';
 import { startMailSender } from './mailSender';
@@ -31,6 +31,10 @@ async function start(handlers: Readonly<Record<string, JobHandler>>): Promise<vo
   if (!trailKeyFile())
     throw new Error(
       'The application does not start: TRAIL_KEY_FILE does not say with which key the audit trail is signed.'
+    );
+  if (!authSecret())
+    throw new Error(
+      'The application does not start: AUTH_SECRET, with which the sign-in forms are protected, is not set.'
     );
   trailKey();
   if (!trailHeadsFile())
