@@ -16,7 +16,7 @@ const MAX_DEPTH = 6;
  * refuses them by name.
  */
 export function nested(form: FormData): Tree {
-  const root: Tree = Object.create(null) as Tree;
+  const root = emptyTree();
   for (const name of new Set(form.keys())) {
     const texts = form.getAll(name).filter((value) => typeof value === 'string');
     const path = name.split('.');
@@ -28,18 +28,22 @@ export function nested(form: FormData): Tree {
 
 function place(root: Tree, path: readonly string[], value: string | string[]): void {
   let at: Tree = root;
-  for (const [depth, step] of path.slice(0, -1).entries()) {
-    const isList = /^\d{1,4}$/.test(path[depth + 1]);
-    if (/^\d+$/.test(step) && Number(step) >= MAX_ITEMS) return;
+  for (const [depth, step] of path.entries()) {
+    const isIndex = /^\d+$/.test(step);
+    if (isIndex ? Number(step) >= MAX_ITEMS : Array.isArray(at)) return;
+    if (depth === path.length - 1) {
+      at[step] = value;
+      return;
+    }
     const known = Object.hasOwn(at, step) ? at[step] : undefined;
-    if (known !== undefined && typeof known === 'string') return;
-    at[step] ??= isList ? [] : (Object.create(null) as Tree);
+    if (typeof known === 'string') return;
+    if (known === undefined) at[step] = /^\d+$/.test(path[depth + 1]) ? [] : emptyTree();
     at = at[step] as Tree;
   }
-  const last = path[path.length - 1];
-  if (Array.isArray(at) && !(/^\d{1,4}$/.test(last) && Number(last) < MAX_ITEMS)) return;
-  at[last] = value;
 }
+
+// Without a prototype, so that no name of a field is one of its members.
+const emptyTree = () => Object.create(null) as Tree;
 
 /** A schema's complaints as field name (`lots.0.expiresOn`) to sentence; the first of each field. */
 export function fieldSentences(error: ZodError): Record<string, string> {
