@@ -1,6 +1,7 @@
 import postgres from 'postgres';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
-import { connect } from '$lib/server/db/client';
+import { closeDatabase, connect } from '$lib/server/db/client';
+import { startBackground } from '$lib/server/platform/startup';
 import { APPEND_ONLY, missingWalls } from '$lib/server/platform/walls';
 import { testDatabase, type TestDatabase } from '../support/database';
 import { makeFixtures } from '../support/fixtures';
@@ -123,6 +124,16 @@ describe('R-035, R-131: the start', () => {
     const owner = connect(base.ownerUrl, { max: 1 });
     expect((await missingWalls(owner.db)).join(' ')).toMatch(/superuser|owns the audit trail/);
     await owner.close();
+  });
+
+  it('R-131: the application itself does not start as the owner, and says why', async () => {
+    process.env.DATABASE_URL = base.ownerUrl;
+    try {
+      await expect(startBackground()).rejects.toThrow(/does not start.*(superuser|owns the audit trail)/);
+    } finally {
+      await closeDatabase();
+      delete process.env.DATABASE_URL;
+    }
   });
 
   it('R-131: refuses a role that owns the trail without being a superuser', async () => {
