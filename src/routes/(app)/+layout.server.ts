@@ -7,7 +7,12 @@ export const load: LayoutServerLoad = ({ locals }) => {
   const { actor } = requireAct(locals);
   return {
     rooms: roomsFor(actor),
-    person: { printedName: actor.printedName, userName: actor.userName, roles: actor.roles.map((role) => ROLE_NAMES[role]), roleIds: actor.roles },
+    person: {
+      printedName: actor.printedName,
+      userName: actor.userName,
+      roles: actor.roles.map((role) => ROLE_NAMES[role]),
+      roleIds: actor.roles
+    },
     timeZone: actor.timeZone,
     demo: actor.demo,
     serverTime: new Date().toISOString()

@@ -1,5 +1,10 @@
-/** A spread below this fraction of the values themselves is rounding, not signal. */
-export const FLAT = 1e-12;
+/**
+ * Whether a standard deviation is so small beside the mean that it is rounding, not signal. (Values far larger than
+ * the mean have a deviation to match, so the mean stands for their size.)
+ */
+export function isFlat(deviation: number, centre: number): boolean {
+  return !(deviation > 1e-12 * Math.abs(centre));
+}
 
 /** Arithmetic mean; values are summed in their order. */
 export function mean(values: Float64Array): number {
@@ -16,14 +21,4 @@ export function squaresAbout(values: Float64Array, centre: number): number {
     sum += d * d;
   }
   return sum;
-}
-
-/** Largest absolute value. */
-export function largestMagnitude(values: Float64Array): number {
-  let largest = 0;
-  for (let i = 0; i < values.length; i++) {
-    const magnitude = Math.abs(values[i]);
-    if (magnitude > largest) largest = magnitude;
-  }
-  return largest;
 }

@@ -1,5 +1,5 @@
 import type { Spectrum } from '../spectrum';
-import { FLAT, largestMagnitude, mean, squaresAbout } from './moments';
+import { isFlat, mean, squaresAbout } from './moments';
 import { noOptions } from './option';
 import { StepRefusal, type PreprocessStep } from './step';
 
@@ -48,12 +48,10 @@ function regressOn(
   const refSquares = squaresAbout(ref, refCentre);
   let products = 0;
   for (let i = 0; i < ref.length; i++) products += (ref[i] - refCentre) * (intensity[i] - centre);
-  const flatRef = !(Math.sqrt(refSquares / ref.length) > FLAT * largestMagnitude(ref));
   const slope = products / refSquares;
-  if (
-    flatRef ||
-    !(Math.abs(slope) * Math.sqrt(refSquares / ref.length) > FLAT * largestMagnitude(intensity))
-  ) {
+  const refDeviation = Math.sqrt(refSquares / ref.length);
+  const flatRef = isFlat(refDeviation, refCentre);
+  if (flatRef || isFlat(Math.abs(slope) * refDeviation, centre)) {
     throw new StepRefusal(
       'zero-variance',
       flatRef

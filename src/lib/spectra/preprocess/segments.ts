@@ -19,11 +19,14 @@ export function uniformSegments(shiftCm1: Float64Array): { stepCm1: number; segm
   const n = shiftCm1.length;
   if (n < 2) throw new StepRefusal('too-few-points', `The spectrum has ${n} points; at least 2 are needed.`);
   let stepCm1 = Infinity;
+  let widest = 0;
   for (let i = 1; i < n; i++) {
     const spacing = shiftCm1[i] - shiftCm1[i - 1];
     if (spacing < stepCm1) stepCm1 = spacing;
+    if (spacing > widest) widest = spacing;
   }
   const slack = stepCm1 * TOLERANCE;
+  if (widest - stepCm1 <= slack) return { stepCm1, segments: [{ start: 0, end: n }] };
   const segments: Segment[] = [];
   let start = 0;
   for (let i = 1; i < n; i++) {

@@ -1,5 +1,5 @@
 import { noOptions } from './option';
-import { FLAT, largestMagnitude, mean, squaresAbout } from './moments';
+import { isFlat, mean, squaresAbout } from './moments';
 import { StepRefusal, type PreprocessStep } from './step';
 
 /**
@@ -20,7 +20,7 @@ export const snv: PreprocessStep<'snv', typeof noOptions> = {
     const n = intensity.length;
     const centre = mean(intensity);
     const deviation = Math.sqrt(squaresAbout(intensity, centre) / (n - 1));
-    if (!(deviation > FLAT * largestMagnitude(intensity))) {
+    if (isFlat(deviation, centre)) {
       throw new StepRefusal('zero-variance', 'The spectrum is flat: every point has the same intensity.');
     }
     const out = new Float64Array(n);

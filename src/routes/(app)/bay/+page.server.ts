@@ -7,5 +7,8 @@ import type { PageServerLoad } from './$types';
 export const load: PageServerLoad = async ({ locals }) => {
   const { actor } = requireAct(locals);
   const db = database();
-  return { lots: await listLotsToScan(db, actor.siteId), instruments: await listInstruments(db, actor.siteId) };
+  return {
+    lots: await listLotsToScan(db, actor.siteId),
+    instruments: await listInstruments(db, actor.siteId)
+  };
 };

@@ -6,5 +6,8 @@ import type { PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals }) => {
   const { actor } = requireAct(locals);
-  return { deliveries: await listDeliveries(database(), actor.siteId), mayRegister: can(actor, 'delivery.register') };
+  return {
+    deliveries: await listDeliveries(database(), actor.siteId),
+    mayRegister: can(actor, 'delivery.register')
+  };
 };

@@ -5,7 +5,8 @@ import { verifyTrail } from '$lib/server/platform/verifyTrail';
 import { getSealState, listTrail, listTrailActions, TRAIL_PAGE } from '$lib/server/queries/trail';
 import type { Actions, PageServerLoad } from './$types';
 
-const isDate = (value: string | null) => value !== null && /^\d{4}-\d{2}-\d{2}$/.test(value) && !Number.isNaN(Date.parse(value));
+const isDate = (value: string | null) =>
+  value !== null && /^\d{4}-\d{2}-\d{2}$/.test(value) && !Number.isNaN(Date.parse(value));
 const isUuid = (value: string | null) => value !== null && /^[0-9a-f-]{36}$/.test(value);
 
 export const load: PageServerLoad = async ({ locals, url }) => {
@@ -25,7 +26,16 @@ export const load: PageServerLoad = async ({ locals, url }) => {
   };
   const page = Math.max(1, Math.min(100_000, Number.parseInt(url.searchParams.get('page') ?? '1', 10) || 1));
   const { total, entries } = await listTrail(db, filter, page);
-  return { filter, page, pageSize: TRAIL_PAGE, total, entries, actions: await listTrailActions(db), seal: await getSealState(db), mayVerify: can(actor, 'trail.verify') };
+  return {
+    filter,
+    page,
+    pageSize: TRAIL_PAGE,
+    total,
+    entries,
+    actions: await listTrailActions(db),
+    seal: await getSealState(db),
+    mayVerify: can(actor, 'trail.verify')
+  };
 };
 
 export const actions: Actions = {

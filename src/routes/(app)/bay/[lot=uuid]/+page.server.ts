@@ -20,9 +20,14 @@ export const load: PageServerLoad = async ({ locals, params }) => {
     manufacturer: detail.manufacturer.name,
     containers: detail.containers,
     scans: detail.scans,
-    repeats: repeats.map((row) => ({ containerId: row.request.containerId, outcome: row.request.outcome, used: row.request.usedByScanId !== null })),
+    repeats: repeats.map((row) => ({
+      containerId: row.request.containerId,
+      outcome: row.request.outcome,
+      used: row.request.usedByScanId !== null
+    })),
     instruments: await listInstruments(db, actor.siteId),
-    hasMethod: detail.lot.methodVersionId !== null || (await getEffectiveVersionId(db, detail.material.id)) !== null
+    hasMethod:
+      detail.lot.methodVersionId !== null || (await getEffectiveVersionId(db, detail.material.id)) !== null
   };
 };
 
@@ -30,14 +35,27 @@ export const actions: Actions = {
   askRepeat: async ({ request, locals }) => {
     const form = await request.formData();
     const values = { scanId: text(form, 'scanId'), cause: text(form, 'cause'), reason: text(form, 'reason') };
-    if (!/^[0-9a-f-]{36}$/.test(values.scanId)) return formFailure(refuse('not-found', 'There is no such scan.'), values);
-    const outcome = await requestRepeat(database(), requireAct(locals), values.scanId, values.cause, values.reason);
+    if (!/^[0-9a-f-]{36}$/.test(values.scanId))
+      return formFailure(refuse('not-found', 'There is no such scan.'), values);
+    const outcome = await requestRepeat(
+      database(),
+      requireAct(locals),
+      values.scanId,
+      values.cause,
+      values.reason
+    );
     return outcome.ok ? { asked: true } : formFailure(outcome, values);
   },
   setAside: async ({ request, locals, params }) => {
     const form = await request.formData();
     const reason = text(form, 'reason');
-    const outcome = await setContainersAside(database(), requireAct(locals), params.lot, [text(form, 'container')], reason);
+    const outcome = await setContainersAside(
+      database(),
+      requireAct(locals),
+      params.lot,
+      [text(form, 'container')],
+      reason
+    );
     return outcome.ok ? { setAside: outcome.value.count } : formFailure(outcome, { reason });
   }
 };

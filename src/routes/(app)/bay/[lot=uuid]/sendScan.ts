@@ -42,13 +42,21 @@ export async function sendScan(
   body.set('file', scan.file);
   for (let attempt = 0; attempt <= RETRIES; attempt++) {
     try {
-      const response = await fetch('/api/v1/scans', { method: 'POST', body, headers: { accept: 'application/json' } });
+      const response = await fetch('/api/v1/scans', {
+        method: 'POST',
+        body,
+        headers: { accept: 'application/json' }
+      });
       const content: unknown = await response.json();
       if (response.ok) return { ok: true, answer: content as ScanAnswer };
       const { title, detail, next } = content as Partial<ScanProblem>;
       return {
         ok: false,
-        problem: { title: title ?? 'Not scanned', detail: detail ?? 'The server refused the scan.', next: next ?? '' }
+        problem: {
+          title: title ?? 'Not scanned',
+          detail: detail ?? 'The server refused the scan.',
+          next: next ?? ''
+        }
       };
     } catch {
       await new Promise((resolve) => setTimeout(resolve, 400 * 2 ** attempt));

@@ -26,9 +26,22 @@ export const actions: Actions = {
     const form = await request.formData();
     const values = { toleranceSetId: text(form, 'toleranceSetId'), standardLot: text(form, 'standardLot') };
     const file = await fileOf(form, 'file');
-    if (!file) return formFailure(refuse('bad-input', "Choose the standard's spectrum.", { file: "Choose the standard's spectrum" }), values);
-    if (!/^[0-9a-f-]{36}$/.test(values.toleranceSetId)) return formFailure(refuse('bad-input', 'Choose the standard.', { toleranceSetId: 'Choose the standard' }), values);
-    const outcome = await recordPerformanceCheck(database(), requireAct(locals), { instrumentId: params.id, ...values }, file);
+    if (!file)
+      return formFailure(
+        refuse('bad-input', "Choose the standard's spectrum.", { file: "Choose the standard's spectrum" }),
+        values
+      );
+    if (!/^[0-9a-f-]{36}$/.test(values.toleranceSetId))
+      return formFailure(
+        refuse('bad-input', 'Choose the standard.', { toleranceSetId: 'Choose the standard' }),
+        values
+      );
+    const outcome = await recordPerformanceCheck(
+      database(),
+      requireAct(locals),
+      { instrumentId: params.id, ...values },
+      file
+    );
     return outcome.ok ? { check: outcome.value } : formFailure(outcome, values);
   },
   takeOut: async ({ request, locals, params }) => {

@@ -1,6 +1,12 @@
 import { refuse } from '$lib/domain/refusals';
 import { can } from '$lib/domain/roles';
-import { attachPaper, dispositionPreview, disposeLot, recordLimitTest, setContainersAside } from '$lib/server/commands/lots';
+import {
+  attachPaper,
+  dispositionPreview,
+  disposeLot,
+  recordLimitTest,
+  setContainersAside
+} from '$lib/server/commands/lots';
 import { decideRepeat } from '$lib/server/commands/repeats';
 import { database } from '$lib/server/db/client';
 import { fileOf, formFailure, notFound, requireAct, text } from '$lib/server/platform/respond';
@@ -25,7 +31,10 @@ export const load: PageServerLoad = async ({ locals, params }) => {
     mayScan: can(actor, 'scan.record'),
     mayRecordLimitTest: can(actor, 'limit-test.record'),
     preview: mayDecide
-      ? { release: (await dispositionPreview(detail, 'release')).sha256, reject: (await dispositionPreview(detail, 'reject')).sha256 }
+      ? {
+          release: (await dispositionPreview(detail, 'release')).sha256,
+          reject: (await dispositionPreview(detail, 'reject')).sha256
+        }
       : null
   };
 };
@@ -54,7 +63,14 @@ export const actions: Actions = {
     const file = await fileOf(form, 'file');
     const values = { kind: text(form, 'kind'), note: text(form, 'note') };
     if (!file) return formFailure(refuse('bad-input', 'Choose a file.', { file: 'Choose a file' }), values);
-    const outcome = await attachPaper(database(), requireAct(locals), params.id, values.kind, values.note, file);
+    const outcome = await attachPaper(
+      database(),
+      requireAct(locals),
+      params.id,
+      values.kind,
+      values.note,
+      file
+    );
     return outcome.ok ? { attached: true } : formFailure(outcome, values);
   },
   limitTest: async ({ request, locals, params }) => {
@@ -63,13 +79,25 @@ export const actions: Actions = {
     if (values.outcome !== 'complies' && values.outcome !== 'does_not_comply') {
       return formFailure(refuse('bad-input', 'Choose the result.', { outcome: 'Choose the result' }), values);
     }
-    const outcome = await recordLimitTest(database(), requireAct(locals), params.id, values.outcome, values.reportNumber);
+    const outcome = await recordLimitTest(
+      database(),
+      requireAct(locals),
+      params.id,
+      values.outcome,
+      values.reportNumber
+    );
     return outcome.ok ? { recorded: true } : formFailure(outcome, values);
   },
   setAside: async ({ request, locals, params }) => {
     const form = await request.formData();
     const reason = text(form, 'reason');
-    const outcome = await setContainersAside(database(), requireAct(locals), params.id, form.getAll('container').map(String), reason);
+    const outcome = await setContainersAside(
+      database(),
+      requireAct(locals),
+      params.id,
+      form.getAll('container').map(String),
+      reason
+    );
     return outcome.ok ? { setAside: outcome.value.count } : formFailure(outcome, { reason });
   },
   repeat: async ({ request, locals }) => {

@@ -33,7 +33,10 @@ export const load: PageServerLoad = async ({ locals, params }) => {
   };
 };
 
-async function signing(event: Parameters<Actions[string]>[0], command: typeof submitMethodVersion | typeof approveMethodVersion) {
+async function signing(
+  event: Parameters<Actions[string]>[0],
+  command: typeof submitMethodVersion | typeof approveMethodVersion
+) {
   const form = await event.request.formData();
   const reason = text(form, 'reason');
   const outcome = await command(database(), requireAct(event.locals), {

@@ -12,7 +12,9 @@ export const load: PageServerLoad = async ({ locals, params }) => {
   const { actor } = requireAct(locals);
   const db = database();
   const found = (await getScan(db, params.id)) ?? notFound('scan');
-  const attempts = (await listScans(db, found.lot.id)).filter((scan) => scan.containerId === found.container.id);
+  const attempts = (await listScans(db, found.lot.id)).filter(
+    (scan) => scan.containerId === found.container.id
+  );
   const version = await getMethodVersion(db, found.scan.methodVersionId);
   const { result, ...stored } = found.decision;
   return {
@@ -25,7 +27,12 @@ export const load: PageServerLoad = async ({ locals, params }) => {
     file: found.file,
     decision: decisionFor(actor, parseDecision(result)),
     evidence: await evidenceForActor(db, actor, params.id),
-    method: version && { id: version.version.id, code: version.method.code, version: version.version.version, recipe: version.version.definition.recipe },
+    method: version && {
+      id: version.version.id,
+      code: version.method.code,
+      version: version.version.version,
+      recipe: version.version.definition.recipe
+    },
     attempts,
     mayReplay: can(actor, 'scan.replay'),
     mayReadMethod: can(actor, 'method.read')

@@ -18,15 +18,25 @@ export const POST: RequestHandler = async ({ request, locals }) => {
     return apiProblem(refuse('bad-input', 'The request is not a form with a file. Nothing was stored.'));
   }
   const file = await fileOf(form, 'file');
-  if (!file) return apiProblem(refuse('bad-input', 'No spectrum file came with the request. Nothing was stored.', { file: 'Choose the spectrum file' }));
+  if (!file)
+    return apiProblem(
+      refuse('bad-input', 'No spectrum file came with the request. Nothing was stored.', {
+        file: 'Choose the spectrum file'
+      })
+    );
   const parsed = newScanSchema.safeParse(scanFields(form));
-  if (!parsed.success) return apiProblem(refuse('bad-input', 'The scan was not recorded.', fieldSentences(parsed.error)));
+  if (!parsed.success)
+    return apiProblem(refuse('bad-input', 'The scan was not recorded.', fieldSentences(parsed.error)));
   const db = database();
   const outcome = await recordScan(db, act, parsed.data, file);
   if (!outcome.ok) return apiProblem(outcome);
   const { decision, ...rest } = outcome.value;
   return json(
-    { ...rest, decision: decisionFor(act.actor, decision), evidence: await evidenceForActor(db, act.actor, rest.scanId) },
+    {
+      ...rest,
+      decision: decisionFor(act.actor, decision),
+      evidence: await evidenceForActor(db, act.actor, rest.scanId)
+    },
     { status: rest.repeated ? 200 : 201 }
   );
 };

@@ -4,6 +4,7 @@ import { getCertificate } from '$lib/server/queries/certificates';
 import type { RequestHandler } from './$types';
 
 export const GET: RequestHandler = async ({ locals, params }) => {
-  const found = (await getCertificate(database(), requireAct(locals).actor.siteId, params.id)) ?? notFound('certificate');
+  const found =
+    (await getCertificate(database(), requireAct(locals).actor.siteId, params.id)) ?? notFound('certificate');
   return download(found.pdf, `${found.number}.pdf`, 'application/pdf');
 };
