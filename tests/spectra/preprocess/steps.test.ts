@@ -85,7 +85,7 @@ describe('reading a recipe', () => {
     ]);
     expect(faults).toEqual([
       expect.stringMatching(/^Step 2\. Savitzky-Golay filter: Window, points: give an odd number/),
-      expect.stringMatching(/^Step 3\. .*lambda: give a number from 10 to 1000000000/),
+      expect.stringMatching(/^Step 3\. .*lambda: give a number from 10 to 1,000,000,000\./),
       expect.stringMatching(/^Step 3\. .*Asymmetry, p: give a number from 0.00001 to 0.5/)
     ]);
   });
