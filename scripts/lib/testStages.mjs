@@ -6,11 +6,11 @@ import { runToEnd } from './processes.mjs';
 import { tallyCheck, tallyPlaywright, tallyVitest } from './testTally.mjs';
 
 /**
- * The stages of the whole test, in order: what is quick to fail comes first. `group` is the word that --only
- * takes; `named` stages hold single tests that -t can pick from.
+ * The stages of the whole test, in order: what is quick to fail comes first. `groups` are the words of --only that
+ * run the stage; `named` stages hold single tests that -t can pick from.
  *
  * @typedef {{ root: string, scratch: string, env: NodeJS.ProcessEnv, pattern?: string, signal?: AbortSignal }} StageSetting
- * @typedef {{ name: string, group: string, named: boolean, needsDatabase: boolean, run: (s: StageSetting) => Promise<import('./testTally.mjs').Tally> }} Stage
+ * @typedef {{ name: string, groups: readonly string[], named: boolean, needsDatabase: boolean, run: (s: StageSetting) => Promise<import('./testTally.mjs').Tally> }} Stage
  */
 
 /** @type {readonly Stage[]} */
@@ -30,12 +30,13 @@ export const STAGES = [
     ['--tsconfig', './tsconfig.json', '--fail-on-warnings', '--output', 'human']
   ),
   vitest('unit', false),
+  // Some tests of the server, and all of the pages, run the application as it is built.
+  { name: 'build', groups: ['server', 'pages'], named: false, needsDatabase: false, run: build },
   vitest('server', true),
-  { name: 'build', group: 'pages', named: false, needsDatabase: false, run: build },
-  { name: 'pages', group: 'pages', named: true, needsDatabase: true, run: playwright }
+  { name: 'pages', groups: ['pages'], named: true, needsDatabase: true, run: playwright }
 ];
 
-export const GROUPS = [...new Set(STAGES.map((stage) => stage.group))];
+export const GROUPS = /** @type {const} */ (['lint', 'check', 'unit', 'server', 'pages']);
 
 /**
  * The stages to run. With a name pattern only those that hold named tests (and the build that the pages need).
@@ -44,8 +45,8 @@ export const GROUPS = [...new Set(STAGES.map((stage) => stage.group))];
 export function chooseStages({ only, pattern }) {
   return STAGES.filter(
     (stage) =>
-      (only === undefined || stage.group === only) &&
-      (pattern === undefined || stage.named || stage.name === 'build')
+      (only === undefined || stage.groups.includes(only)) &&
+      (pattern === undefined || stage.named || (stage.name === 'build' && only !== 'unit'))
   );
 }
 
@@ -66,7 +67,7 @@ function check(name, group, program, words) {
     });
     return tallyCheck(code);
   };
-  return { name, group, named: false, needsDatabase: false, run };
+  return { name, groups: [group], named: false, needsDatabase: false, run };
 }
 
 /** @param {string} project @param {boolean} needsDatabase @returns {Stage} */
@@ -80,7 +81,7 @@ function vitest(project, needsDatabase) {
     const { code } = await runToEnd(process.execPath, words, { cwd: root, env, signal, show: true });
     return tallyVitest(readReport(report), code, pattern !== undefined);
   };
-  return { name: project, group: project, named: true, needsDatabase, run };
+  return { name: project, groups: [project], named: true, needsDatabase, run };
 }
 
 /** @param {StageSetting} setting */

@@ -61,15 +61,17 @@ describe('choosing stages', () => {
   const names = (choice: { only?: string; pattern?: string }) => chooseStages(choice).map((s) => s.name);
 
   it('runs everything unless told otherwise, quick checks first', () => {
-    expect(names({})).toEqual(['format', 'lint', 'imports', 'check', 'unit', 'server', 'build', 'pages']);
+    expect(names({})).toEqual(['format', 'lint', 'imports', 'check', 'unit', 'build', 'server', 'pages']);
   });
 
-  it('builds before the pages, also when only those are asked for', () => {
+  it('builds before what runs the built application, also when only that is asked for', () => {
     expect(names({ only: 'pages' })).toEqual(['build', 'pages']);
+    expect(names({ only: 'server' })).toEqual(['build', 'server']);
+    expect(names({ only: 'unit', pattern: 'quarantine' })).toEqual(['unit']);
   });
 
   it('leaves out what holds no named tests when picking by name', () => {
-    expect(names({ pattern: 'quarantine' })).toEqual(['unit', 'server', 'build', 'pages']);
+    expect(names({ pattern: 'quarantine' })).toEqual(['unit', 'build', 'server', 'pages']);
     expect(names({ only: 'lint', pattern: 'quarantine' })).toEqual([]);
   });
 });
