@@ -46,7 +46,7 @@ export function chooseStages({ only, pattern }) {
   return STAGES.filter(
     (stage) =>
       (only === undefined || stage.groups.includes(only)) &&
-      (pattern === undefined || stage.named || (stage.name === 'build' && only !== 'unit'))
+      (pattern === undefined || stage.named || stage.name === 'build')
   );
 }
 
