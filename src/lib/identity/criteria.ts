@@ -58,10 +58,20 @@ export function verdictOf(results: readonly CriterionResult[]): Exclude<Verdict,
   return results.some((result) => result.outcome === 'near') ? 'inconclusive' : 'pass';
 }
 
-/** The criterion that decided: the one furthest on the wrong side, or the closest to it on a pass. */
+/**
+ * The criterion that decided: among those of the worst outcome, the one furthest on the wrong side (closest to its
+ * limit on a pass). One merely near never speaks for a fail.
+ */
 export function decisive(results: readonly CriterionResult[]): CriterionResult {
-  return results.reduce((worst, result) => (result.margin < worst.margin ? result : worst));
+  const { outcome } = results.reduce((worst, result) =>
+    SEVERITY[result.outcome] > SEVERITY[worst.outcome] ? result : worst
+  );
+  return results
+    .filter((result) => result.outcome === outcome)
+    .reduce((worst, result) => (result.margin < worst.margin ? result : worst));
 }
+
+const SEVERITY = { met: 0, near: 1, 'not-met': 2 } as const;
 
 export const isNearLimit = (results: readonly CriterionResult[]): boolean =>
   results.some((result) => result.outcome === 'met' && result.margin < NEAR_LIMIT);
