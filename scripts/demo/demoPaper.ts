@@ -18,5 +18,9 @@ export function demoPaper(subject: string) {
   const xref = body.length;
   const table = offsets.map((offset) => `${String(offset).padStart(10, '0')} 00000 n \n`).join('');
   body += `xref\n0 ${objects.length + 1}\n0000000000 65535 f \n${table}trailer\n<< /Size ${objects.length + 1} /Root 1 0 R >>\nstartxref\n${xref}\n%%EOF\n`;
-  return { fileName: `certificate-of-analysis-${subject.replaceAll(/[^A-Za-z0-9-]/g, '-')}.pdf`, mediaType: 'application/pdf', bytes: new TextEncoder().encode(body) };
+  return {
+    fileName: `certificate-of-analysis-${subject.replaceAll(/[^A-Za-z0-9-]/g, '-')}.pdf`,
+    mediaType: 'application/pdf',
+    bytes: new TextEncoder().encode(body)
+  };
 }

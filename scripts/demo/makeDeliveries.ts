@@ -46,17 +46,29 @@ export async function makeDeliveries(db: Database, plant: Plant): Promise<MadeLo
         }))
       })
     );
-    for (const [i, lot] of delivery.lots.entries()) made.push(await playLot(db, plant, registered.lots[i].id, lot));
+    for (const [i, lot] of delivery.lots.entries())
+      made.push(await playLot(db, plant, registered.lots[i].id, lot));
   }
   return made;
 }
 
 async function playLot(db: Database, plant: Plant, lotId: string, lot: DemoLot): Promise<MadeLot> {
   const operator = plant.acts['o.reis'];
-  if (lot.paper) must(await attachPaper(db, operator, lotId, 'certificate_of_analysis', 'Demo paper', demoPaper(`${lot.itemCode} ${lot.batch}`)));
+  if (lot.paper)
+    must(
+      await attachPaper(
+        db,
+        operator,
+        lotId,
+        'certificate_of_analysis',
+        'Demo paper',
+        demoPaper(`${lot.itemCode} ${lot.batch}`)
+      )
+    );
   const detail = await getLot(db, plant.siteId, lotId);
   if (!detail) throw new Error('a lot vanished');
-  for (const scan of lot.scans) await playScan(db, plant, detail.containers[scan.container - 1].barcode, lot, scan);
+  for (const scan of lot.scans)
+    await playScan(db, plant, detail.containers[scan.container - 1].barcode, lot, scan);
   if (lot.release) {
     const now = await getLot(db, plant.siteId, lotId);
     if (!now) throw new Error('a lot vanished');
@@ -72,7 +84,12 @@ async function playLot(db: Database, plant: Plant, lotId: string, lot: DemoLot):
       })
     );
   }
-  return { itemCode: lot.itemCode, lotNumber: detail.lot.lotNumber, barcodes: detail.containers.map((row) => row.barcode), scanned: lot.scans.map((scan) => scan.container) };
+  return {
+    itemCode: lot.itemCode,
+    lotNumber: detail.lot.lotNumber,
+    barcodes: detail.containers.map((row) => row.barcode),
+    scanned: lot.scans.map((scan) => scan.container)
+  };
 }
 
 /** What RM-1 sees in a drum: the demo's own material unless something else is in it. */
@@ -92,12 +109,25 @@ export function drumFile(itemCode: string, batch: string, scan: DemoScan, fileNa
   return textFile(fileName, toDelimitedText(spectrum, instrument, `container ${scan.container}`));
 }
 
-async function playScan(db: Database, plant: Plant, barcode: string, lot: DemoLot, scan: DemoScan): Promise<void> {
+async function playScan(
+  db: Database,
+  plant: Plant,
+  barcode: string,
+  lot: DemoLot,
+  scan: DemoScan
+): Promise<void> {
   must(
     await recordScan(
       db,
       plant.acts['o.reis'],
-      { scanId: randomUUID(), barcode, instrumentId: plant.instrumentIds['RM-1'], repeatReason: scan.repeatReason ?? '', sentLate: false, readOptions: {} },
+      {
+        scanId: randomUUID(),
+        barcode,
+        instrumentId: plant.instrumentIds['RM-1'],
+        repeatReason: scan.repeatReason ?? '',
+        sentLate: false,
+        readOptions: {}
+      },
       drumFile(lot.itemCode, lot.batch, scan, `${barcode}.csv`)
     )
   );

@@ -2,10 +2,23 @@ import { SUGGESTED_TOLERANCES } from '../../src/lib/domain/wavenumberStandards';
 import { suggestDefinition } from '../../src/lib/identity/suggest';
 import { recordPerformanceCheck } from '../../src/lib/server/commands/instruments';
 import { createMaterial } from '../../src/lib/server/commands/materials';
-import { approveMethodVersion, createMethodVersion, submitMethodVersion } from '../../src/lib/server/commands/methods';
+import {
+  approveMethodVersion,
+  createMethodVersion,
+  submitMethodVersion
+} from '../../src/lib/server/commands/methods';
 import { addReference, decideReference } from '../../src/lib/server/commands/references';
 import type { Database } from '../../src/lib/server/db/client';
-import { approvedSources, instruments, manufacturers, roleGrants, sites, suppliers, toleranceSets, users } from '../../src/lib/server/db/schema';
+import {
+  approvedSources,
+  instruments,
+  manufacturers,
+  roleGrants,
+  sites,
+  suppliers,
+  toleranceSets,
+  users
+} from '../../src/lib/server/db/schema';
 import { transact } from '../../src/lib/server/db/transaction';
 import { systemAct, type Act } from '../../src/lib/server/platform/act';
 import { hashPassword } from '../../src/lib/server/platform/password';
@@ -33,16 +46,29 @@ const APPROVER = 'q.sousa';
 
 /** Site, people, sources, instruments with their checks, materials with references and effective methods. */
 export async function makePlant(db: Database): Promise<Plant> {
-  const [site] = await db.insert(sites).values({ ...SITE, demo: true }).returning({ id: sites.id });
+  const [site] = await db
+    .insert(sites)
+    .values({ ...SITE, demo: true })
+    .returning({ id: sites.id });
   const acts = await makePeople(db, site.id);
   const passwords = Object.fromEntries(PEOPLE.map((person) => [person.userName, person.password]));
   const supplierRows = await db.insert(suppliers).values(SUPPLIERS).returning();
   const manufacturerRows = await db.insert(manufacturers).values(MANUFACTURERS).returning();
-  const byCode = (rows: { code: string; id: string }[]) => Object.fromEntries(rows.map((row) => [row.code, row.id]));
+  const byCode = (rows: { code: string; id: string }[]) =>
+    Object.fromEntries(rows.map((row) => [row.code, row.id]));
   const instrumentIds = await makeInstruments(db, site.id, acts);
-  const plant: Plant = { siteId: site.id, acts, passwords, instrumentIds, supplierIds: byCode(supplierRows), manufacturerIds: byCode(manufacturerRows), materialIds: {} };
+  const plant: Plant = {
+    siteId: site.id,
+    acts,
+    passwords,
+    instrumentIds,
+    supplierIds: byCode(supplierRows),
+    manufacturerIds: byCode(manufacturerRows),
+    materialIds: {}
+  };
   const materialIds: Record<string, string> = {};
-  for (const material of readMaterials()) materialIds[material.itemCode] = await makeMaterial(db, plant, material);
+  for (const material of readMaterials())
+    materialIds[material.itemCode] = await makeMaterial(db, plant, material);
   return { ...plant, materialIds };
 }
 
@@ -66,7 +92,9 @@ async function makePeople(db: Database, siteId: string): Promise<Record<string, 
           statementAcceptedAt: new Date('2026-01-12T09:10:00Z')
         })
         .returning({ id: users.id });
-      await tx.insert(roleGrants).values(person.roles.map((role) => ({ userId: row.id, role, reason: 'Demo account' })));
+      await tx
+        .insert(roleGrants)
+        .values(person.roles.map((role) => ({ userId: row.id, role, reason: 'Demo account' })));
       await recordTrail(tx, maker, {
         action: 'account.create',
         recordType: 'account',
@@ -74,15 +102,30 @@ async function makePeople(db: Database, siteId: string): Promise<Record<string, 
         recordLabel: `Account ${person.userName}`,
         after: { userName: person.userName, printedName: person.printedName, roles: [...person.roles] }
       });
-      const actor = { id: row.id, userName: person.userName, printedName: person.printedName, roles: person.roles, siteId, timeZone: SITE.timeZone, demo: true };
+      const actor = {
+        id: row.id,
+        userName: person.userName,
+        printedName: person.printedName,
+        roles: person.roles,
+        siteId,
+        timeZone: SITE.timeZone,
+        demo: true
+      };
       return { actor, requestId: 'demo seed', sessionKey: null };
     });
   }
   return acts;
 }
 
-async function makeInstruments(db: Database, siteId: string, acts: Record<string, Act>): Promise<Record<string, string>> {
-  const sets = await db.insert(toleranceSets).values(SUGGESTED_TOLERANCES.map((set) => ({ ...set, version: 1, bands: [...set.bands] }))).returning();
+async function makeInstruments(
+  db: Database,
+  siteId: string,
+  acts: Record<string, Act>
+): Promise<Record<string, string>> {
+  const sets = await db
+    .insert(toleranceSets)
+    .values(SUGGESTED_TOLERANCES.map((set) => ({ ...set, version: 1, bands: [...set.bands] })))
+    .returning();
   const handheld = sets.find((set) => set.standard === 'polystyrene' && set.name === 'handheld');
   if (!handheld) throw new Error('there is no tolerance set for polystyrene');
   const ids: Record<string, string> = {};
@@ -106,48 +149,114 @@ async function makeInstruments(db: Database, siteId: string, acts: Record<string
     ids[instrument.name] = row.id;
     const shifts = instrument.name === 'RM-2' ? DRIFT_CM1 : [instrument.shiftCm1];
     for (const [i, shiftCm1] of shifts.entries()) {
-      const spectrum = synthesise(readPolystyrene(), { ...instrument, shiftCm1 }, { lotSeed: 'PS-04', scanSeed: `${instrument.name} check ${i}`, brightness: 40_000, fluorescence: 0.1, linerShare: 0 });
-      const file = textFile(`${instrument.name}-polystyrene-${i + 1}.csv`, toDelimitedText(spectrum, instrument, 'polystyrene standard PS-04'));
-      must(await recordPerformanceCheck(db, acts['o.reis'], { instrumentId: row.id, toleranceSetId: handheld.id, standardLot: 'PS-04' }, file));
+      const spectrum = synthesise(
+        readPolystyrene(),
+        { ...instrument, shiftCm1 },
+        {
+          lotSeed: 'PS-04',
+          scanSeed: `${instrument.name} check ${i}`,
+          brightness: 40_000,
+          fluorescence: 0.1,
+          linerShare: 0
+        }
+      );
+      const file = textFile(
+        `${instrument.name}-polystyrene-${i + 1}.csv`,
+        toDelimitedText(spectrum, instrument, 'polystyrene standard PS-04')
+      );
+      must(
+        await recordPerformanceCheck(
+          db,
+          acts['o.reis'],
+          { instrumentId: row.id, toleranceSetId: handheld.id, standardLot: 'PS-04' },
+          file
+        )
+      );
     }
   }
   return ids;
 }
 
-export const textFile = (fileName: string, text: string) => ({ fileName, mediaType: 'text/plain', bytes: new TextEncoder().encode(text) });
+export const textFile = (fileName: string, text: string) => ({
+  fileName,
+  mediaType: 'text/plain',
+  bytes: new TextEncoder().encode(text)
+});
 
 async function makeMaterial(db: Database, plant: Plant, material: DemoMaterial): Promise<string> {
   const { state: _state, bands: _bands, fluorescence: _fluorescence, flags, ...fields } = material;
-  const created = must(await createMaterial(db, plant.acts[OWNER], { ...fields, ...flags, suitabilityReason: fields.suitabilityReason ?? '', packaging: [...fields.packaging] }));
+  const created = must(
+    await createMaterial(db, plant.acts[OWNER], {
+      ...fields,
+      ...flags,
+      suitabilityReason: fields.suitabilityReason ?? '',
+      packaging: [...fields.packaging]
+    })
+  );
   const source = sourceOf(material.itemCode);
   await db.insert(approvedSources).values(
-    source.suppliers.map((code) => ({ materialId: created.id, supplierId: plant.supplierIds[code], manufacturerId: plant.manufacturerIds[source.manufacturer] }))
+    source.suppliers.map((code) => ({
+      materialId: created.id,
+      supplierId: plant.supplierIds[code],
+      manufacturerId: plant.manufacturerIds[source.manufacturer]
+    }))
   );
   if (material.ramanSuitability !== 'suitable') return created.id;
   const referenceIds = await makeReferences(db, plant, material, created.id);
   // The first version of one method was built on two lots only; a third lot was rejected under it, so it was superseded.
   if (material.itemCode === 'LAC-M') {
     await makeMethod(db, plant, created.id, referenceIds.slice(0, 2 * SCANS_PER_LOT), 'First version');
-    await makeMethod(db, plant, created.id, referenceIds, 'A challenge with a third lot failed under version 1: two more lots added to the references');
+    await makeMethod(
+      db,
+      plant,
+      created.id,
+      referenceIds,
+      'A challenge with a third lot failed under version 1: two more lots added to the references'
+    );
   } else await makeMethod(db, plant, created.id, referenceIds, 'First version');
   return created.id;
 }
 
-async function makeReferences(db: Database, plant: Plant, material: DemoMaterial, materialId: string): Promise<string[]> {
+async function makeReferences(
+  db: Database,
+  plant: Plant,
+  material: DemoMaterial,
+  materialId: string
+): Promise<string[]> {
   const ids: string[] = [];
   const owner = plant.acts[OWNER];
   for (let lot = 1; lot <= LOTS_PER_MATERIAL; lot++) {
     for (let scan = 1; scan <= SCANS_PER_LOT; scan++) {
       const instrument = INSTRUMENTS[(lot + scan) % 2];
       const lotSeed = `${material.itemCode} reference lot ${lot}`;
-      const spectrum = synthesise(material.bands, instrument, { lotSeed, scanSeed: `${lotSeed} scan ${scan}`, fluorescence: material.fluorescence, liner: readLiner(), linerShare: 0.01 * scan });
+      const spectrum = synthesise(material.bands, instrument, {
+        lotSeed,
+        scanSeed: `${lotSeed} scan ${scan}`,
+        fluorescence: material.fluorescence,
+        liner: readLiner(),
+        linerShare: 0.01 * scan
+      });
       const title = `${material.name}, reference lot R${lot}`;
-      const file = lot % 2 === 0 ? textFile(`${material.itemCode}-R${lot}-${scan}.jdx`, toJcampDx(spectrum, instrument, title)) : textFile(`${material.itemCode}-R${lot}-${scan}.csv`, toDelimitedText(spectrum, instrument, title));
+      const file =
+        lot % 2 === 0
+          ? textFile(`${material.itemCode}-R${lot}-${scan}.jdx`, toJcampDx(spectrum, instrument, title))
+          : textFile(
+              `${material.itemCode}-R${lot}-${scan}.csv`,
+              toDelimitedText(spectrum, instrument, title)
+            );
       const added = must(
         await addReference(
           db,
           owner,
-          { materialId, kind: 'lot_sample', sourceLot: `${material.itemCode}-R${lot}`, certificate: `CoA ${material.itemCode}-R${lot} (demo)`, independentIdentity: 'Infrared spectrum agrees (demo)', instrumentId: plant.instrumentIds[instrument.name], excitationNm: instrument.excitationNm },
+          {
+            materialId,
+            kind: 'lot_sample',
+            sourceLot: `${material.itemCode}-R${lot}`,
+            certificate: `CoA ${material.itemCode}-R${lot} (demo)`,
+            independentIdentity: 'Infrared spectrum agrees (demo)',
+            instrumentId: plant.instrumentIds[instrument.name],
+            excitationNm: instrument.excitationNm
+          },
           file
         )
       );
@@ -158,10 +267,36 @@ async function makeReferences(db: Database, plant: Plant, material: DemoMaterial
   return ids;
 }
 
-async function makeMethod(db: Database, plant: Plant, materialId: string, referenceIds: string[], changeReason: string): Promise<void> {
+async function makeMethod(
+  db: Database,
+  plant: Plant,
+  materialId: string,
+  referenceIds: string[],
+  changeReason: string
+): Promise<void> {
   const definition = suggestDefinition(await loadLabelledReferences(db, referenceIds), 785);
   const owner = plant.acts[OWNER];
-  const draft = must(await createMethodVersion(db, owner, { materialId, definition, intendedUse: 'Identity of incoming material through one layer of polyethylene liner', changeReason, referenceIds }));
-  must(await submitMethodVersion(db, owner, { versionId: draft.id, password: plant.passwords[OWNER], reason: changeReason }));
-  must(await approveMethodVersion(db, plant.acts[APPROVER], { versionId: draft.id, password: plant.passwords[APPROVER], reason: 'References, limits and cautions reviewed' }));
+  const draft = must(
+    await createMethodVersion(db, owner, {
+      materialId,
+      definition,
+      intendedUse: 'Identity of incoming material through one layer of polyethylene liner',
+      changeReason,
+      referenceIds
+    })
+  );
+  must(
+    await submitMethodVersion(db, owner, {
+      versionId: draft.id,
+      password: plant.passwords[OWNER],
+      reason: changeReason
+    })
+  );
+  must(
+    await approveMethodVersion(db, plant.acts[APPROVER], {
+      versionId: draft.id,
+      password: plant.passwords[APPROVER],
+      reason: 'References, limits and cautions reviewed'
+    })
+  );
 }

@@ -24,7 +24,16 @@ export function writeSamples(folder: string, lots: readonly MadeLot[]): void {
   const wrong = 'wrong-material-sorbitol.csv';
   writeFileSync(join(folder, wrong), drumFile('SOR', 'sample', { container: 1 }, wrong).bytes);
   for (const instrument of INSTRUMENTS) {
-    const spectrum = synthesise(readPolystyrene(), instrument, { lotSeed: 'PS-04', scanSeed: `${instrument.name} sample`, brightness: 40_000, fluorescence: 0.1, linerShare: 0 });
-    writeFileSync(join(folder, `polystyrene-${instrument.name}.csv`), toDelimitedText(spectrum, instrument, 'polystyrene standard PS-04'));
+    const spectrum = synthesise(readPolystyrene(), instrument, {
+      lotSeed: 'PS-04',
+      scanSeed: `${instrument.name} sample`,
+      brightness: 40_000,
+      fluorescence: 0.1,
+      linerShare: 0
+    });
+    writeFileSync(
+      join(folder, `polystyrene-${instrument.name}.csv`),
+      toDelimitedText(spectrum, instrument, 'polystyrene standard PS-04')
+    );
   }
 }

@@ -66,10 +66,21 @@ function normal(random: RandomSource): number {
 }
 
 /** The spectrum an instrument would give of a material. */
-export function synthesise(bands: readonly DemoBand[], instrument: DemoInstrument, options: SynthesisOptions): DemoSpectrum {
+export function synthesise(
+  bands: readonly DemoBand[],
+  instrument: DemoInstrument,
+  options: SynthesisOptions
+): DemoSpectrum {
   const lot = seededRandom(seedOf(`lot ${options.lotSeed}`));
   const scan = seededRandom(seedOf(`scan ${options.scanSeed}`));
-  const { brightness = 20_000, fluorescence = 0.4, linerShare = 0.02, liner = [], spikes = 0, ceiling = 65_535 } = options;
+  const {
+    brightness = 20_000,
+    fluorescence = 0.4,
+    linerShare = 0.02,
+    liner = [],
+    spikes = 0,
+    ceiling = 65_535
+  } = options;
   const own = bands.map((band) => varied(band, lot, scan, 1 - linerShare));
   const around = liner.map((band) => varied(band, lot, scan, linerShare));
   const truth = trueAxis(instrument);
@@ -78,7 +89,9 @@ export function synthesise(bands: readonly DemoBand[], instrument: DemoInstrumen
   const intensity = truth.map((x) => {
     const u = (x - instrument.fromCm1) / (instrument.toCm1 - instrument.fromCm1);
     const background = level * (1 - 0.75 * u + bend * u * (1 - u) * 4);
-    const counts = brightness * (bandsAt(own, x, instrument) + bandsAt(around, x, instrument) + Math.max(0.02, background));
+    const counts =
+      brightness *
+      (bandsAt(own, x, instrument) + bandsAt(around, x, instrument) + Math.max(0.02, background));
     const noisy = counts + Math.sqrt(counts) * normal(scan) + instrument.readNoise * normal(scan);
     return Math.min(ceiling, Math.max(0, Math.round(noisy)));
   });

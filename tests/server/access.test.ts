@@ -33,7 +33,10 @@ function addressOf(key: string): { method: string; path: string } {
 
 type Seen = 'let in' | 'sent to sign in' | 'refused';
 
-async function ask(key: string, token: string | undefined): Promise<{ seen: Seen; status: number; body: string }> {
+async function ask(
+  key: string,
+  token: string | undefined
+): Promise<{ seen: Seen; status: number; body: string }> {
   const { method, path } = addressOf(key);
   const body = method === 'GET' ? undefined : new FormData();
   const response = await app.request(path, { method, body, token, headers: { accept: 'text/html' } });
@@ -41,13 +44,14 @@ async function ask(key: string, token: string | undefined): Promise<{ seen: Seen
   const location = response.headers.get('location') ?? '';
   const api = path.startsWith('/api/');
   if (api && response.status === 401) return { seen: 'sent to sign in', status: response.status, body: text };
-  if (response.status === 303 && location.startsWith('/signin') && path !== '/signout') return { seen: 'sent to sign in', status: response.status, body: text };
+  if (response.status === 303 && location.startsWith('/signin') && path !== '/signout')
+    return { seen: 'sent to sign in', status: response.status, body: text };
   if (response.status === 403) return { seen: 'refused', status: response.status, body: text };
   return { seen: 'let in', status: response.status, body: text };
 }
 
-/** Signing out ends the session the test still needs. */
-const KEYS = Object.keys(ROUTE_RULES).filter((key) => !key.endsWith('/signout'));
+/** Signing out ends the session the test still needs; the page of refusals is a refusal itself. */
+const KEYS = Object.keys(ROUTE_RULES).filter((key) => !key.endsWith('/signout') && key !== 'GET /refused');
 
 describe.each(KEYS)('R-003, R-004: %s', (key) => {
   const rule = ROUTE_RULES[key];
@@ -58,10 +62,16 @@ describe.each(KEYS)('R-003, R-004: %s', (key) => {
     for (const role of ROLE_IDS) {
       const answer = await ask(key, people[role].token);
       seen[role] = answer.seen;
-      expected[role] = rule === 'public' || rule === 'signed-in' || can({ roles: [role] }, rule) ? 'let in' : 'refused';
+      expected[role] =
+        rule === 'public' || rule === 'signed-in' || can({ roles: [role] }, rule) ? 'let in' : 'refused';
       expect([key, role, answer.status < 500]).toEqual([key, role, true]);
-      if (answer.seen === 'refused') expect(answer.body).toContain(rolesFor(rule as Action).replaceAll("'", '&#39;'));
-      if (answer.seen === 'refused' && key.includes(' /api/')) expect(JSON.parse(answer.body)).toMatchObject({ status: 403, type: 'urn:wharfinger:problem:not-allowed' });
+      if (answer.seen === 'refused')
+        expect(answer.body).toContain(rolesFor(rule as Action).replaceAll("'", '&#39;'));
+      if (answer.seen === 'refused' && key.includes(' /api/'))
+        expect(JSON.parse(answer.body)).toMatchObject({
+          status: 403,
+          type: 'urn:wharfinger:problem:not-allowed'
+        });
     }
     seen.nobody = (await ask(key, undefined)).seen;
     expected.nobody = rule === 'public' ? 'let in' : 'sent to sign in';
@@ -70,10 +80,13 @@ describe.each(KEYS)('R-003, R-004: %s', (key) => {
 });
 
 test('R-003: a refusal is on the trail with who asked for what', async () => {
-  const before = await database.ownerSql`select count(*)::int as n from trail_entries where action = 'access.refused'`;
+  const before =
+    await database.ownerSql`select count(*)::int as n from trail_entries where action = 'access.refused'`;
   await ask('GET /admin', people.operator.token);
-  const after = await database.ownerSql`select actor_name, after from trail_entries where action = 'access.refused' order by id desc limit 1`;
-  const [{ n }] = await database.ownerSql`select count(*)::int as n from trail_entries where action = 'access.refused'`;
+  const after =
+    await database.ownerSql`select actor_name, after from trail_entries where action = 'access.refused' order by id desc limit 1`;
+  const [{ n }] =
+    await database.ownerSql`select count(*)::int as n from trail_entries where action = 'access.refused'`;
   expect(n).toBe(Number(before[0].n) + 1);
   expect(after[0].actor_name).toBe('Person operator');
 });

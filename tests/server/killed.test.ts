@@ -33,7 +33,13 @@ async function halfRecords() {
       (select count(*)::int from containers c where c.status <> 'awaiting' and not exists (select from scans s where s.container_id = c.id)) as moved_without_scan`;
   return row;
 }
-const NONE = { scans_without_bytes: 0, scans_without_decision: 0, scans_without_one_entry: 0, entries_without_scan: 0, moved_without_scan: 0 };
+const NONE = {
+  scans_without_bytes: 0,
+  scans_without_decision: 0,
+  scans_without_one_entry: 0,
+  entries_without_scan: 0,
+  moved_without_scan: 0
+};
 
 test('R-036, R-125: a server killed between upload and answer leaves whole records or none, and sending again records each scan once', async () => {
   const port = await freePort();
@@ -43,16 +49,28 @@ test('R-036, R-125: a server killed between upload and answer leaves whole recor
     app.request('/api/v1/scans', {
       method: 'POST',
       token: people.operator.token,
-      body: scanForm({ scanId: scan.scanId, barcode: scan.barcode, instrumentId: plant.instrumentId }, scan.file)
+      body: scanForm(
+        { scanId: scan.scanId, barcode: scan.barcode, instrumentId: plant.instrumentId },
+        scan.file
+      )
     });
   let unanswered = 0;
   for (let round = 0; round < ROUNDS; round++) {
     const batch = Array.from({ length: SCANS_A_ROUND }, (_, i) => {
       const index = round * SCANS_A_ROUND + i;
-      return { scanId: randomUUID(), barcode: lot.barcodes[index], file: spectrumFile('CAC', `drum ${index}`) };
+      return {
+        scanId: randomUUID(),
+        barcode: lot.barcodes[index],
+        file: spectrumFile('CAC', `drum ${index}`)
+      };
     });
     sent.push(...batch);
-    const answers = batch.map((scan) => send(scan).then((response) => response.status, () => null));
+    const answers = batch.map((scan) =>
+      send(scan).then(
+        (response) => response.status,
+        () => null
+      )
+    );
     // Later in each round, so that the kill meets requests at every point of their way.
     await new Promise((resolve) => setTimeout(resolve, 6 + round * 14));
     await app.kill();
@@ -65,17 +83,22 @@ test('R-036, R-125: a server killed between upload and answer leaves whole recor
   for (const scan of sent) expect([200, 201]).toContain((await send(scan)).status);
   await app.stop();
   expect(await halfRecords()).toEqual(NONE);
-  const [{ scans, containers }] = await database.ownerSql`select count(*)::int as scans, count(distinct container_id)::int as containers from scans`;
+  const [{ scans, containers }] =
+    await database.ownerSql`select count(*)::int as scans, count(distinct container_id)::int as containers from scans`;
   expect([scans, containers]).toEqual([sent.length, sent.length]);
 });
 
 test('R-047: the same id with another file is refused and changes nothing', async () => {
   const app = await startApplication(database.appUrl);
-  const [first] = await database.ownerSql`select s.id, c.barcode from scans s join containers c on c.id = s.container_id limit 1`;
+  const [first] =
+    await database.ownerSql`select s.id, c.barcode from scans s join containers c on c.id = s.container_id limit 1`;
   const response = await app.request('/api/v1/scans', {
     method: 'POST',
     token: people.operator.token,
-    body: scanForm({ scanId: String(first.id), barcode: String(first.barcode), instrumentId: plant.instrumentId }, spectrumFile('CAC', 'another file'))
+    body: scanForm(
+      { scanId: String(first.id), barcode: String(first.barcode), instrumentId: plant.instrumentId },
+      spectrumFile('CAC', 'another file')
+    )
   });
   expect(response.status).toBe(409);
   expect(response.headers.get('content-type')).toContain('application/problem+json');

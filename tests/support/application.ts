@@ -29,18 +29,25 @@ export function freePort(): Promise<number> {
     probe.once('error', reject);
     probe.listen(0, '127.0.0.1', () => {
       const address = probe.address();
-      probe.close(() => (address !== null && typeof address === 'object' ? resolve(address.port) : reject(new Error('no port'))));
+      probe.close(() =>
+        address !== null && typeof address === 'object' ? resolve(address.port) : reject(new Error('no port'))
+      );
     });
   });
 }
 
 /** Starts `node build` on the database, as the application's role, and waits until it answers. */
-export async function startApplication(appUrl: string, options: { port?: number; env?: NodeJS.ProcessEnv } = {}): Promise<RunningApplication> {
+export async function startApplication(
+  appUrl: string,
+  options: { port?: number; env?: NodeJS.ProcessEnv } = {}
+): Promise<RunningApplication> {
   const port = options.port ?? (await freePort());
   const origin = `http://127.0.0.1:${port}`;
   const folder = mkdtempSync(join(tmpdir(), 'wharfinger-app-'));
   const keyFile = join(folder, 'trail-key.pem');
-  writeFileSync(keyFile, generateKeyPairSync('ed25519').privateKey.export({ type: 'pkcs8', format: 'pem' }), { mode: 0o600 });
+  writeFileSync(keyFile, generateKeyPairSync('ed25519').privateKey.export({ type: 'pkcs8', format: 'pem' }), {
+    mode: 0o600
+  });
   const child: ChildProcess = spawn(process.execPath, ['build'], {
     cwd: ROOT,
     env: {
@@ -77,7 +84,11 @@ export async function startApplication(appUrl: string, options: { port?: number;
       fetch(origin + path, {
         redirect: 'manual',
         ...init,
-        headers: { origin, ...(token ? { cookie: `__Host-wharfinger=${token}` } : {}), ...(headers as Record<string, string>) }
+        headers: {
+          origin,
+          ...(token ? { cookie: `__Host-wharfinger=${token}` } : {}),
+          ...(headers as Record<string, string>)
+        }
       }),
     kill: () => end('SIGKILL'),
     stop: () => end('SIGTERM')

@@ -16,17 +16,31 @@ import { INSTRUMENTS } from '../../scripts/demo/scenario';
 import { synthesise, toDelimitedText, toJcampDx, type SynthesisOptions } from '../../scripts/demo/synthesise';
 import { PASSWORD, type Fixtures } from './fixtures';
 
-export const textFile = (fileName: string, text: string) => ({ fileName, mediaType: 'text/plain', bytes: new TextEncoder().encode(text) });
+export const textFile = (fileName: string, text: string) => ({
+  fileName,
+  mediaType: 'text/plain',
+  bytes: new TextEncoder().encode(text)
+});
 export type ReferenceFile = ReturnType<typeof textFile>;
 
 const [RM1] = INSTRUMENTS;
 
 /** A made spectrum of a demo material on the test instrument, as a file. */
-export function spectrumFile(itemCode: string, scanSeed: string, options: Partial<SynthesisOptions> & { jcamp?: boolean; fileName?: string } = {}): ReferenceFile {
+export function spectrumFile(
+  itemCode: string,
+  scanSeed: string,
+  options: Partial<SynthesisOptions> & { jcamp?: boolean; fileName?: string } = {}
+): ReferenceFile {
   const material = readMaterials().find((row) => row.itemCode === itemCode);
   if (!material) throw new Error(`no material ${itemCode}`);
   const { jcamp = false, fileName = `${itemCode}-${scanSeed}.${jcamp ? 'jdx' : 'csv'}`, ...more } = options;
-  const spectrum = synthesise(material.bands, RM1, { lotSeed: `${itemCode} test lot`, scanSeed, fluorescence: material.fluorescence, liner: readLiner(), ...more });
+  const spectrum = synthesise(material.bands, RM1, {
+    lotSeed: `${itemCode} test lot`,
+    scanSeed,
+    fluorescence: material.fluorescence,
+    liner: readLiner(),
+    ...more
+  });
   return textFile(fileName, (jcamp ? toJcampDx : toDelimitedText)(spectrum, RM1, scanSeed));
 }
 
@@ -37,47 +51,139 @@ export interface TestPlant {
   readonly supplierId: string;
   readonly manufacturerId: string;
   /** Adds a material with an effective method built from these files; each file is a lot of its own. */
-  addMaterial(itemCode: string, files: readonly ReferenceFile[], more?: { degEgHighRisk?: boolean; name?: string }): Promise<string>;
+  addMaterial(
+    itemCode: string,
+    files: readonly ReferenceFile[],
+    more?: { degEgHighRisk?: boolean; name?: string }
+  ): Promise<string>;
   /** A material of the demo, with made references. */
   addDemoMaterial(itemCode: string): Promise<string>;
-  registerLot(materialId: string, containers: number): Promise<{ lotId: string; lotNumber: string; deliveryId: string; barcodes: string[]; containerIds: string[] }>;
+  registerLot(
+    materialId: string,
+    containers: number
+  ): Promise<{
+    lotId: string;
+    lotNumber: string;
+    deliveryId: string;
+    barcodes: string[];
+    containerIds: string[];
+  }>;
 }
 
 let notes = 0;
 
 /** Suppliers, a checked instrument, and ways to add materials with methods and lots. */
 export async function makeTestPlant(db: Database, { siteId, people }: Fixtures): Promise<TestPlant> {
-  const [supplier] = await db.insert(suppliers).values({ code: 'S1', name: 'Skerry Fine Substances' }).returning();
-  const [manufacturer] = await db.insert(manufacturers).values({ code: 'M1', name: 'Saltmarsh Sugars' }).returning();
-  const fields = { siteId, excitationNm: 785, rangeFromCm1: 180, rangeToCm1: 2050, resolutionCm1: 6, location: 'dock' };
-  const [instrument] = await db.insert(instruments).values({ ...fields, name: 'RM-1', serial: RM1.serial }).returning();
-  const [unchecked] = await db.insert(instruments).values({ ...fields, name: 'RM-9', serial: 'WF-785-0999' }).returning();
+  const [supplier] = await db
+    .insert(suppliers)
+    .values({ code: 'S1', name: 'Skerry Fine Substances' })
+    .returning();
+  const [manufacturer] = await db
+    .insert(manufacturers)
+    .values({ code: 'M1', name: 'Saltmarsh Sugars' })
+    .returning();
+  const fields = {
+    siteId,
+    excitationNm: 785,
+    rangeFromCm1: 180,
+    rangeToCm1: 2050,
+    resolutionCm1: 6,
+    location: 'dock'
+  };
+  const [instrument] = await db
+    .insert(instruments)
+    .values({ ...fields, name: 'RM-1', serial: RM1.serial })
+    .returning();
+  const [unchecked] = await db
+    .insert(instruments)
+    .values({ ...fields, name: 'RM-9', serial: 'WF-785-0999' })
+    .returning();
   const [set] = await db
     .insert(toleranceSets)
-    .values(SUGGESTED_TOLERANCES.filter((row) => row.name === 'handheld').map((row) => ({ ...row, version: 1, bands: [...row.bands] })))
+    .values(
+      SUGGESTED_TOLERANCES.filter((row) => row.name === 'handheld').map((row) => ({
+        ...row,
+        version: 1,
+        bands: [...row.bands]
+      }))
+    )
     .returning();
-  const polystyrene = synthesise(readPolystyrene(), RM1, { lotSeed: 'PS', scanSeed: 'check', brightness: 40_000, fluorescence: 0.1, linerShare: 0 });
+  const polystyrene = synthesise(readPolystyrene(), RM1, {
+    lotSeed: 'PS',
+    scanSeed: 'check',
+    brightness: 40_000,
+    fluorescence: 0.1,
+    linerShare: 0
+  });
   const check = must(
-    await recordPerformanceCheck(db, people.operator.act, { instrumentId: instrument.id, toleranceSetId: set.id, standardLot: 'PS' }, textFile('ps.csv', toDelimitedText(polystyrene, RM1, 'polystyrene')))
+    await recordPerformanceCheck(
+      db,
+      people.operator.act,
+      { instrumentId: instrument.id, toleranceSetId: set.id, standardLot: 'PS' },
+      textFile('ps.csv', toDelimitedText(polystyrene, RM1, 'polystyrene'))
+    )
   );
   if (!check.result.passed) throw new Error('the test instrument did not pass its check');
 
   const addMaterial: TestPlant['addMaterial'] = async (itemCode, files, more = {}) => {
     const owner = people.method_owner.act;
     const { id } = must(
-      await createMaterial(db, owner, { itemCode, name: more.name ?? `Material ${itemCode}`, casNumber: null, grade: '', ramanSuitability: 'suitable', suitabilityReason: '', dark: false, energetic: false, lightSensitive: false, degEgHighRisk: more.degEgHighRisk ?? false, packaging: [] })
+      await createMaterial(db, owner, {
+        itemCode,
+        name: more.name ?? `Material ${itemCode}`,
+        casNumber: null,
+        grade: '',
+        ramanSuitability: 'suitable',
+        suitabilityReason: '',
+        dark: false,
+        energetic: false,
+        lightSensitive: false,
+        degEgHighRisk: more.degEgHighRisk ?? false,
+        packaging: []
+      })
     );
-    await db.insert(approvedSources).values({ materialId: id, supplierId: supplier.id, manufacturerId: manufacturer.id });
+    await db
+      .insert(approvedSources)
+      .values({ materialId: id, supplierId: supplier.id, manufacturerId: manufacturer.id });
     const referenceIds: string[] = [];
     for (const [i, file] of files.entries()) {
-      const added = must(await addReference(db, owner, { materialId: id, kind: 'lot_sample', sourceLot: `lot ${i + 1}`, certificate: 'test', independentIdentity: 'test', instrumentId: instrument.id, excitationNm: 785 }, file));
+      const added = must(
+        await addReference(
+          db,
+          owner,
+          {
+            materialId: id,
+            kind: 'lot_sample',
+            sourceLot: `lot ${i + 1}`,
+            certificate: 'test',
+            independentIdentity: 'test',
+            instrumentId: instrument.id,
+            excitationNm: 785
+          },
+          file
+        )
+      );
       must(await decideReference(db, owner, added.id, 'accepted', 'for a test'));
       referenceIds.push(added.id);
     }
     const definition = suggestDefinition(await loadLabelledReferences(db, referenceIds), 785);
-    const draft = must(await createMethodVersion(db, owner, { materialId: id, definition, intendedUse: 'test', changeReason: '', referenceIds }));
+    const draft = must(
+      await createMethodVersion(db, owner, {
+        materialId: id,
+        definition,
+        intendedUse: 'test',
+        changeReason: '',
+        referenceIds
+      })
+    );
     must(await submitMethodVersion(db, owner, { versionId: draft.id, password: PASSWORD, reason: 'test' }));
-    must(await approveMethodVersion(db, people.approver.act, { versionId: draft.id, password: PASSWORD, reason: 'for a test' }));
+    must(
+      await approveMethodVersion(db, people.approver.act, {
+        versionId: draft.id,
+        password: PASSWORD,
+        reason: 'for a test'
+      })
+    );
     return id;
   };
 
@@ -89,7 +195,14 @@ export async function makeTestPlant(db: Database, { siteId, people }: Fixtures):
     addMaterial,
     addDemoMaterial: (itemCode) => {
       const name = readMaterials().find((row) => row.itemCode === itemCode)?.name;
-      const files = [1, 2, 3].flatMap((lot) => [1, 2].map((scan) => spectrumFile(itemCode, `reference ${lot} ${scan}`, { lotSeed: `${itemCode} reference lot ${lot}`, linerShare: 0.01 * scan })));
+      const files = [1, 2, 3].flatMap((lot) =>
+        [1, 2].map((scan) =>
+          spectrumFile(itemCode, `reference ${lot} ${scan}`, {
+            lotSeed: `${itemCode} reference lot ${lot}`,
+            linerShare: 0.01 * scan
+          })
+        )
+      );
       return addMaterial(itemCode, files, { name });
     },
     registerLot: async (materialId, containerCount) => {
@@ -101,12 +214,30 @@ export async function makeTestPlant(db: Database, { siteId, people }: Fixtures):
           carrier: '',
           condition: '',
           arrivedOn: await siteToday(db, 'UTC'),
-          lots: [{ materialId, manufacturerId: manufacturer.id, manufacturerBatch: `B-${notes}`, expiresOn: '2099-12-31', retestOn: null, containerCount, packaging: 'drum', samplingPlan: 'every_container', samplingReason: '' }]
+          lots: [
+            {
+              materialId,
+              manufacturerId: manufacturer.id,
+              manufacturerBatch: `B-${notes}`,
+              expiresOn: '2099-12-31',
+              retestOn: null,
+              containerCount,
+              packaging: 'drum',
+              samplingPlan: 'every_container',
+              samplingReason: ''
+            }
+          ]
         })
       );
       const [lot] = delivery.lots;
       const rows = await listContainers(db, lot.id);
-      return { lotId: lot.id, lotNumber: lot.lotNumber, deliveryId: delivery.id, barcodes: rows.map((row) => row.barcode), containerIds: rows.map((row) => row.id) };
+      return {
+        lotId: lot.id,
+        lotNumber: lot.lotNumber,
+        deliveryId: delivery.id,
+        barcodes: rows.map((row) => row.barcode),
+        containerIds: rows.map((row) => row.id)
+      };
     }
   };
 }
@@ -115,6 +246,7 @@ export async function makeTestPlant(db: Database, { siteId, people }: Fixtures):
 export function scanForm(fields: Record<string, string>, file: ReferenceFile | null): FormData {
   const form = new FormData();
   for (const [name, value] of Object.entries(fields)) form.set(name, value);
-  if (file) form.set('file', new File([Uint8Array.from(file.bytes)], file.fileName, { type: file.mediaType }));
+  if (file)
+    form.set('file', new File([Uint8Array.from(file.bytes)], file.fileName, { type: file.mediaType }));
   return form;
 }

@@ -7,7 +7,9 @@ export const calendarDate = z
   .regex(/^\d{4}-\d{2}-\d{2}$/, 'Enter the date as year, month and day')
   .refine((text) => {
     const [year, month, day] = text.split('-').map(Number);
-    return day >= 1 && day <= daysInMonth(year, month) && month >= 1 && month <= 12 && year >= 1990 && year <= 2100;
+    return (
+      day >= 1 && day <= daysInMonth(year, month) && month >= 1 && month <= 12 && year >= 1990 && year <= 2100
+    );
   }, 'This date does not exist');
 
 /** Days of a month (1 to 12) of a year, Gregorian calendar. */

@@ -23,7 +23,12 @@ export interface CertificateData {
     readonly containerCount: number;
     readonly samplingPlan: string;
   };
-  readonly material: { readonly itemCode: string; readonly name: string; readonly casNumber: string | null; readonly grade: string };
+  readonly material: {
+    readonly itemCode: string;
+    readonly name: string;
+    readonly casNumber: string | null;
+    readonly grade: string;
+  };
   readonly highRisk: boolean;
   readonly limitTest: string | null;
   readonly method: {
@@ -36,11 +41,28 @@ export interface CertificateData {
     readonly engineVersion: string;
   };
   readonly attempts: readonly CertificateAttempt[];
-  readonly checks: readonly { readonly instrument: string; readonly serial: string; readonly excitationNm: number; readonly standard: string; readonly performedAt: Date; readonly outcome: string }[];
+  readonly checks: readonly {
+    readonly instrument: string;
+    readonly serial: string;
+    readonly excitationNm: number;
+    readonly standard: string;
+    readonly performedAt: Date;
+    readonly outcome: string;
+  }[];
   readonly plots: readonly CertificatePlot[];
-  readonly deviations: readonly { readonly number: string; readonly title: string; readonly conclusion: string }[];
+  readonly deviations: readonly {
+    readonly number: string;
+    readonly title: string;
+    readonly conclusion: string;
+  }[];
   readonly disposition: { readonly outcome: 'release' | 'reject'; readonly reason: string };
-  readonly signature: { readonly printedName: string; readonly role: string; readonly meaning: string; readonly signedAt: Date; readonly recordSha256: string };
+  readonly signature: {
+    readonly printedName: string;
+    readonly role: string;
+    readonly meaning: string;
+    readonly signedAt: Date;
+    readonly recordSha256: string;
+  };
   readonly treeHead: { readonly size: number; readonly rootHash: string } | null;
 }
 

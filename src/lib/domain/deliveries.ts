@@ -45,7 +45,10 @@ export const newDeliverySchema = z.strictObject({
   carrier: z.string().trim().max(120).default(''),
   arrivedOn: calendarDate,
   condition: z.string().trim().max(1000).default(''),
-  lots: z.array(newLotSchema).min(1, 'A delivery has at least one lot').max(20, 'Register at most 20 lots at a time')
+  lots: z
+    .array(newLotSchema)
+    .min(1, 'A delivery has at least one lot')
+    .max(20, 'Register at most 20 lots at a time')
 });
 
 export type NewDelivery = z.output<typeof newDeliverySchema>;

@@ -1,4 +1,10 @@
-export const DEVIATION_ORIGINS = ['fail', 'inconclusive', 'withdrawn_method', 'lapsed_check', 'by_hand'] as const;
+export const DEVIATION_ORIGINS = [
+  'fail',
+  'inconclusive',
+  'withdrawn_method',
+  'lapsed_check',
+  'by_hand'
+] as const;
 export const DEVIATION_PHASES = ['assess', 'investigate', 'conclude', 'closed'] as const;
 export type DeviationPhase = (typeof DEVIATION_PHASES)[number];
 

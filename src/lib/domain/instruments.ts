@@ -1,6 +1,15 @@
 /** States of an instrument and kinds of logbook entry. */
 export const INSTRUMENT_STATUSES = ['in_service', 'out_of_service'] as const;
-export const LOGBOOK_KINDS = ['use', 'check', 'service', 'cleaning', 'move', 'fault', 'out_of_service', 'return_to_service'] as const;
+export const LOGBOOK_KINDS = [
+  'use',
+  'check',
+  'service',
+  'cleaning',
+  'move',
+  'fault',
+  'out_of_service',
+  'return_to_service'
+] as const;
 
 /** Whether an instrument may be used now, from its last performance check. */
 export type CheckState = 'valid' | 'missing' | 'expired' | 'failed';

@@ -11,7 +11,12 @@ export const LOT_STATUS_NAMES: Readonly<Record<LotStatus, string>> = {
 };
 
 export const SAMPLING_PLANS = ['every_container', 'sqrt_n_plus_1', 'who_n', 'who_p', 'who_r'] as const;
-export const PAPER_KINDS = ['certificate_of_analysis', 'delivery_paper', 'photograph', 'limit_test_report'] as const;
+export const PAPER_KINDS = [
+  'certificate_of_analysis',
+  'delivery_paper',
+  'photograph',
+  'limit_test_report'
+] as const;
 export const LIMIT_TEST_OUTCOMES = ['complies', 'does_not_comply'] as const;
 export const DISPOSITION_OUTCOMES = ['release', 'reject', 'reopen'] as const;
 export type DispositionOutcome = (typeof DISPOSITION_OUTCOMES)[number];

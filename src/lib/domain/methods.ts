@@ -1,5 +1,11 @@
 /** Life cycle of a method version and its runs. */
-export const METHOD_VERSION_STATUSES = ['draft', 'in_review', 'effective', 'superseded', 'withdrawn'] as const;
+export const METHOD_VERSION_STATUSES = [
+  'draft',
+  'in_review',
+  'effective',
+  'superseded',
+  'withdrawn'
+] as const;
 export type MethodVersionStatus = (typeof METHOD_VERSION_STATUSES)[number];
 
 export const METHOD_VERSION_STATUS_NAMES: Readonly<Record<MethodVersionStatus, string>> = {

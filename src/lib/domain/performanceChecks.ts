@@ -16,7 +16,8 @@ export interface CheckResult {
   readonly resolutionCm1: number | null;
 }
 
-export type JudgedCheck = { readonly ok: true; readonly result: CheckResult } | { readonly ok: false; readonly sentence: string };
+export type JudgedCheck =
+  { readonly ok: true; readonly result: CheckResult } | { readonly ok: false; readonly sentence: string };
 
 /** Excitation wavelengths further apart than this are different lasers, nm. */
 const SAME_LASER_NM = 1;
@@ -31,7 +32,8 @@ export function judgeCheck(
   tolerances: { readonly standard: string; readonly bands: readonly BandTolerance[] }
 ): JudgedCheck {
   const standard = findStandard(tolerances.standard);
-  if (!standard) return { ok: false, sentence: `There are no published bands of ${tolerances.standard} on file.` };
+  if (!standard)
+    return { ok: false, sentence: `There are no published bands of ${tolerances.standard} on file.` };
   const stated = read.acquisition.excitationNm;
   if (stated !== undefined && Math.abs(stated - instrument.excitationNm) > SAME_LASER_NM) {
     return {

@@ -4,16 +4,48 @@
  */
 export const REFUSALS = {
   'not-signed-in': { status: 401, title: 'You are not signed in', next: 'Sign in and try again.' },
-  'not-allowed': { status: 403, title: 'Your role does not open this', next: 'Ask a person who holds the role, or an administrator.' },
-  'own-work': { status: 403, title: 'Another person must do this', next: 'Ask a second person who did not do the work.' },
+  'not-allowed': {
+    status: 403,
+    title: 'Your role does not open this',
+    next: 'Ask a person who holds the role, or an administrator.'
+  },
+  'own-work': {
+    status: 403,
+    title: 'Another person must do this',
+    next: 'Ask a second person who did not do the work.'
+  },
   'signature-wrong': { status: 401, title: 'The password is not right', next: 'Type your password again.' },
-  'not-found': { status: 404, title: 'There is no such record', next: 'Check the number or scan the label again.' },
-  'wrong-state': { status: 409, title: 'This cannot be done now', next: 'Look at the record again: someone may have changed it.' },
-  'changed-meanwhile': { status: 409, title: 'The record has changed since you opened it', next: 'Open it again and repeat what you did.' },
+  'not-found': {
+    status: 404,
+    title: 'There is no such record',
+    next: 'Check the number or scan the label again.'
+  },
+  'wrong-state': {
+    status: 409,
+    title: 'This cannot be done now',
+    next: 'Look at the record again: someone may have changed it.'
+  },
+  'changed-meanwhile': {
+    status: 409,
+    title: 'The record has changed since you opened it',
+    next: 'Open it again and repeat what you did.'
+  },
   'already-exists': { status: 409, title: 'This is already on record', next: 'Open the existing record.' },
-  'key-reused': { status: 409, title: 'The same key came with other content', next: 'Send the new content under a new key.' },
-  'bad-input': { status: 422, title: 'Something in the form needs attention', next: 'Correct the fields named and send it again.' },
-  'bad-file': { status: 422, title: 'The file could not be read', next: 'Export the spectrum again as JCAMP-DX or delimited text.' },
+  'key-reused': {
+    status: 409,
+    title: 'The same key came with other content',
+    next: 'Send the new content under a new key.'
+  },
+  'bad-input': {
+    status: 422,
+    title: 'Something in the form needs attention',
+    next: 'Correct the fields named and send it again.'
+  },
+  'bad-file': {
+    status: 422,
+    title: 'The file could not be read',
+    next: 'Export the spectrum again as JCAMP-DX or delimited text.'
+  },
   'too-large': { status: 413, title: 'The file is too large', next: 'Send a file smaller than the limit.' },
   'too-many': { status: 429, title: 'Too many attempts', next: 'Wait a little and try again.' }
 } as const;

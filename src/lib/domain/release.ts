@@ -45,7 +45,10 @@ export function releaseConditions(facts: ReleaseFacts): readonly ReleaseConditio
     {
       code: 'undecided',
       met: facts.status !== 'released' && facts.status !== 'rejected',
-      sentence: facts.status === 'released' || facts.status === 'rejected' ? `The lot is ${facts.status} already.` : 'The lot is not decided yet.'
+      sentence:
+        facts.status === 'released' || facts.status === 'rejected'
+          ? `The lot is ${facts.status} already.`
+          : 'The lot is not decided yet.'
     },
     {
       code: 'all-scanned',
@@ -63,7 +66,9 @@ export function releaseConditions(facts: ReleaseFacts): readonly ReleaseConditio
     {
       code: 'method-stands',
       met: !facts.methodWithdrawn,
-      sentence: facts.methodWithdrawn ? 'The method version used has been withdrawn.' : 'The method version used has not been withdrawn.'
+      sentence: facts.methodWithdrawn
+        ? 'The method version used has been withdrawn.'
+        : 'The method version used has not been withdrawn.'
     },
     {
       code: 'instrument-fit',
@@ -73,16 +78,29 @@ export function releaseConditions(facts: ReleaseFacts): readonly ReleaseConditio
           ? 'Every passing scan was made on an instrument with a valid check.'
           : `No valid instrument check behind container ${facts.withoutCheck.join(', ')}.`
     },
-    { code: 'papers', met: facts.papers > 0, sentence: facts.papers > 0 ? `${plural(facts.papers, 'paper')} attached.` : 'No certificate of analysis is attached.' },
+    {
+      code: 'papers',
+      met: facts.papers > 0,
+      sentence:
+        facts.papers > 0
+          ? `${plural(facts.papers, 'paper')} attached.`
+          : 'No certificate of analysis is attached.'
+    },
     {
       code: 'no-open-deviation',
       met: facts.openDeviations.length === 0,
-      sentence: facts.openDeviations.length === 0 ? 'No deviation is open.' : `Open: ${facts.openDeviations.join(', ')}.`
+      sentence:
+        facts.openDeviations.length === 0
+          ? 'No deviation is open.'
+          : `Open: ${facts.openDeviations.join(', ')}.`
     },
     {
       code: 'no-open-repeat',
       met: facts.openRepeats === 0,
-      sentence: facts.openRepeats === 0 ? 'No request for a repeat is waiting.' : `${plural(facts.openRepeats, 'request')} for a repeat waiting.`
+      sentence:
+        facts.openRepeats === 0
+          ? 'No request for a repeat is waiting.'
+          : `${plural(facts.openRepeats, 'request')} for a repeat waiting.`
     },
     limitTestCondition(facts),
     {
@@ -93,7 +111,9 @@ export function releaseConditions(facts: ReleaseFacts): readonly ReleaseConditio
     {
       code: 'second-person',
       met: !facts.scannedByIds.includes(facts.signerId),
-      sentence: facts.scannedByIds.includes(facts.signerId) ? 'You scanned this lot, so another approver must decide it.' : 'The signer did not scan this lot.'
+      sentence: facts.scannedByIds.includes(facts.signerId)
+        ? 'You scanned this lot, so another approver must decide it.'
+        : 'The signer did not scan this lot.'
     }
   ];
   return conditions;
@@ -101,8 +121,20 @@ export function releaseConditions(facts: ReleaseFacts): readonly ReleaseConditio
 
 function limitTestCondition(facts: ReleaseFacts): ReleaseCondition {
   const code = 'limit-test' as const;
-  if (!facts.highRisk) return { code, met: true, sentence: 'No ethylene or diethylene glycol limit test is asked for this material.' };
-  if (facts.limitTest === 'complies') return { code, met: true, sentence: 'The ethylene and diethylene glycol limit test complies.' };
-  if (facts.limitTest === 'does_not_comply') return { code, met: false, sentence: 'The ethylene and diethylene glycol limit test does not comply.' };
-  return { code, met: false, sentence: 'The ethylene and diethylene glycol limit test result is missing: identity by Raman does not replace it.' };
+  if (!facts.highRisk)
+    return {
+      code,
+      met: true,
+      sentence: 'No ethylene or diethylene glycol limit test is asked for this material.'
+    };
+  if (facts.limitTest === 'complies')
+    return { code, met: true, sentence: 'The ethylene and diethylene glycol limit test complies.' };
+  if (facts.limitTest === 'does_not_comply')
+    return { code, met: false, sentence: 'The ethylene and diethylene glycol limit test does not comply.' };
+  return {
+    code,
+    met: false,
+    sentence:
+      'The ethylene and diethylene glycol limit test result is missing: identity by Raman does not replace it.'
+  };
 }

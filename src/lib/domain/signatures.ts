@@ -1,5 +1,13 @@
 /** What a signature can mean; each signing step allows only its own (21 CFR 11.50(a)(3)). */
-export const SIGNATURE_MEANINGS = ['authored', 'reviewed', 'approved', 'rejected', 'granted', 'declined', 'acknowledged'] as const;
+export const SIGNATURE_MEANINGS = [
+  'authored',
+  'reviewed',
+  'approved',
+  'rejected',
+  'granted',
+  'declined',
+  'acknowledged'
+] as const;
 export type SignatureMeaning = (typeof SIGNATURE_MEANINGS)[number];
 
 export const SIGNATURE_MEANING_NAMES: Readonly<Record<SignatureMeaning, string>> = {

@@ -71,7 +71,12 @@ export async function registerDelivery(
   });
 }
 
-async function registerLot(tx: Transaction, act: Act, deliveryId: string, input: NewDelivery['lots'][number]) {
+async function registerLot(
+  tx: Transaction,
+  act: Act,
+  deliveryId: string,
+  input: NewDelivery['lots'][number]
+) {
   const lotNumber = await nextNumber(tx, 'L');
   const [lot] = await tx
     .insert(lots)
@@ -127,7 +132,9 @@ async function sourceFaults(tx: Transaction, input: NewDelivery): Promise<Record
   input.lots.forEach((lot, index) => {
     const material = known.find((row) => row.id === lot.materialId);
     if (!material) faults[`lots.${index}.materialId`] = 'Choose a material from the list';
-    else if (!sources.some((row) => row.materialId === lot.materialId && row.manufacturerId === lot.manufacturerId)) {
+    else if (
+      !sources.some((row) => row.materialId === lot.materialId && row.manufacturerId === lot.manufacturerId)
+    ) {
       faults[`lots.${index}.manufacturerId`] =
         `This manufacturer through this supplier is not an approved source of ${material.name}: set the goods aside and call QA`;
     }
@@ -135,7 +142,11 @@ async function sourceFaults(tx: Transaction, input: NewDelivery): Promise<Record
   return faults;
 }
 
-async function samplingFaults(tx: Transaction, act: Act, input: NewDelivery): Promise<Record<string, string>> {
+async function samplingFaults(
+  tx: Transaction,
+  act: Act,
+  input: NewDelivery
+): Promise<Record<string, string>> {
   const [site] = await tx.select().from(sites).where(eq(sites.id, act.actor.siteId));
   const faults: Record<string, string> = {};
   input.lots.forEach((lot, index) => {

@@ -48,16 +48,30 @@ export function dispositionRecord(detail: LotDetail, outcome: string) {
       status: container.status,
       scans: detail.scans
         .filter((scan) => scan.containerId === container.id)
-        .map((scan) => ({ id: scan.id, attempt: scan.attempt, verdict: scan.verdict, correlation: scan.correlation, hotellingT2: scan.hotellingT2, qResidual: scan.qResidual }))
+        .map((scan) => ({
+          id: scan.id,
+          attempt: scan.attempt,
+          verdict: scan.verdict,
+          correlation: scan.correlation,
+          hotellingT2: scan.hotellingT2,
+          qResidual: scan.qResidual
+        }))
     })),
-    papers: detail.papers.map((paper) => ({ kind: paper.kind, fileName: paper.fileName, sha256: paper.sha256 })),
+    papers: detail.papers.map((paper) => ({
+      kind: paper.kind,
+      fileName: paper.fileName,
+      sha256: paper.sha256
+    })),
     deviations: detail.deviations.map((deviation) => ({ number: deviation.number, phase: deviation.phase })),
     limitTest: detail.limitTests[0]?.outcome ?? null
   };
 }
 
 /** SHA-256 and record of what a signer of this lot would sign now. */
-export async function dispositionPreview(detail: LotDetail, outcome: string): Promise<{ record: object; sha256: string }> {
+export async function dispositionPreview(
+  detail: LotDetail,
+  outcome: string
+): Promise<{ record: object; sha256: string }> {
   const record = dispositionRecord(detail, outcome);
   const digest = await crypto.subtle.digest('SHA-256', new TextEncoder().encode(canonicalJson(record)));
   return { record, sha256: Buffer.from(digest).toString('hex') };
@@ -67,11 +81,20 @@ export async function dispositionPreview(detail: LotDetail, outcome: string): Pr
  * Releases or rejects a whole lot under an e-signature. Release needs every condition of domain/release.ts;
  * both need a reason, a second person and a password typed now. Issues the certificate with a release.
  */
-export async function disposeLot(db: Database, act: Act, input: DispositionInput): Promise<Outcome<{ certificateId: string | null }>> {
+export async function disposeLot(
+  db: Database,
+  act: Act,
+  input: DispositionInput
+): Promise<Outcome<{ certificateId: string | null }>> {
   if (!can(act.actor, 'lot.release')) return refuse('not-allowed', 'Deciding a lot is for QA approvers.');
-  if (input.reason.trim().length < 3) return refuse('bad-input', 'Say why in a few words.', { reason: 'Say why in a few words' });
+  if (input.reason.trim().length < 3)
+    return refuse('bad-input', 'Say why in a few words.', { reason: 'Say why in a few words' });
   const meaning = input.outcome === 'release' ? 'approved' : 'rejected';
-  const proof = await proveIdentity(db, act, { password: input.password, oneTimeCode: input.oneTimeCode, action: 'lot.release' });
+  const proof = await proveIdentity(db, act, {
+    password: input.password,
+    oneTimeCode: input.oneTimeCode,
+    action: 'lot.release'
+  });
   if (!proof.ok) return proof;
   return transact(db, async (tx) => {
     await tx.select({ id: lots.id }).from(lots).where(eq(lots.id, input.lotId)).for('update');
@@ -86,17 +109,30 @@ export async function disposeLot(db: Database, act: Act, input: DispositionInput
 async function whyNotDecide(tx: Transaction, act: Act, detail: LotDetail, input: DispositionInput) {
   const preview = await dispositionPreview(detail, input.outcome);
   if (preview.sha256 !== input.seenSha256) {
-    return refuse('changed-meanwhile', 'The lot has changed since you opened it, so nothing was signed. Read it again.');
+    return refuse(
+      'changed-meanwhile',
+      'The lot has changed since you opened it, so nothing was signed. Read it again.'
+    );
   }
   const conditions = await getReleaseConditions(tx, detail, act.actor.id, act.actor.timeZone);
-  const needed = input.outcome === 'release' ? conditions : conditions.filter((condition) => ['undecided', 'second-person'].includes(condition.code));
+  const needed =
+    input.outcome === 'release'
+      ? conditions
+      : conditions.filter((condition) => ['undecided', 'second-person'].includes(condition.code));
   const unmet = needed.filter((condition) => !condition.met);
   if (unmet.length === 0) return null;
   const code = unmet.some((condition) => condition.code === 'second-person') ? 'own-work' : 'wrong-state';
   return refuse(code, unmet.map((condition) => condition.sentence).join(' '));
 }
 
-async function writeDisposition(tx: Transaction, act: Act, detail: LotDetail, input: DispositionInput, meaning: 'approved' | 'rejected', proof: SignatureProof) {
+async function writeDisposition(
+  tx: Transaction,
+  act: Act,
+  detail: LotDetail,
+  input: DispositionInput,
+  meaning: 'approved' | 'rejected',
+  proof: SignatureProof
+) {
   const status = input.outcome === 'release' ? 'released' : 'rejected';
   const signature = await sign(tx, act, proof, {
     meaning,
@@ -107,7 +143,12 @@ async function writeDisposition(tx: Transaction, act: Act, detail: LotDetail, in
   });
   const [disposition] = await tx
     .insert(dispositions)
-    .values({ lotId: detail.lot.id, outcome: input.outcome, reason: input.reason.trim(), signatureId: signature.id })
+    .values({
+      lotId: detail.lot.id,
+      outcome: input.outcome,
+      reason: input.reason.trim(),
+      signatureId: signature.id
+    })
     .returning({ id: dispositions.id });
   await tx.update(lots).set({ status }).where(eq(lots.id, detail.lot.id));
   await recordTrail(tx, act, {
@@ -130,7 +171,10 @@ async function writeDisposition(tx: Transaction, act: Act, detail: LotDetail, in
     reason: input.reason.trim(),
     signature: { ...signature, role: actingRole(act.actor, 'lot.release') ?? '', meaning }
   });
-  const certificate = await issueCertificate(tx, data, { lotId: detail.lot.id, dispositionId: disposition.id });
+  const certificate = await issueCertificate(tx, data, {
+    lotId: detail.lot.id,
+    dispositionId: disposition.id
+  });
   await recordTrail(tx, act, {
     action: 'certificate.issue',
     recordType: 'certificate',
@@ -153,8 +197,16 @@ const startsWith = (bytes: Uint8Array, head: number[]) => head.every((byte, inde
 export const MAX_PAPER_BYTES = 15 * 1024 * 1024;
 
 /** Attaches a paper (PDF or photograph, told by content and not by name) to a lot. */
-export async function attachPaper(db: Database, act: Act, lotId: string, kind: string, note: string, file: IncomingFile): Promise<Outcome<{ id: string }>> {
-  if (!can(act.actor, 'paper.attach')) return refuse('not-allowed', 'Attaching papers is for operators and approvers.');
+export async function attachPaper(
+  db: Database,
+  act: Act,
+  lotId: string,
+  kind: string,
+  note: string,
+  file: IncomingFile
+): Promise<Outcome<{ id: string }>> {
+  if (!can(act.actor, 'paper.attach'))
+    return refuse('not-allowed', 'Attaching papers is for operators and approvers.');
   const known = PAPER_KINDS.find((name) => name === kind);
   if (!known) return refuse('bad-input', 'Choose what the paper is.', { kind: 'Choose what the paper is' });
   if (file.bytes.byteLength === 0) return refuse('bad-input', 'Choose a file.', { file: 'Choose a file' });
@@ -164,17 +216,26 @@ export async function attachPaper(db: Database, act: Act, lotId: string, kind: s
   }
   const mediaType = Object.keys(PAPER_TYPES).find((type) => PAPER_TYPES[type](file.bytes));
   if (!mediaType) {
-    const sentence = 'The paper must be a PDF, PNG or JPEG file; this one is something else, whatever its name says';
+    const sentence =
+      'The paper must be a PDF, PNG or JPEG file; this one is something else, whatever its name says';
     return refuse('bad-input', `${sentence}. Nothing was stored.`, { file: sentence });
   }
   return transact(db, async (tx) => {
     const detail = await getLot(tx, act.actor.siteId, lotId);
     if (!detail) return refuse('not-found', 'There is no such lot.');
-    if (detail.lot.status === 'released' || detail.lot.status === 'rejected') return refuse('wrong-state', `The lot is ${detail.lot.status} already.`);
+    if (detail.lot.status === 'released' || detail.lot.status === 'rejected')
+      return refuse('wrong-state', `The lot is ${detail.lot.status} already.`);
     const raw = await keepRawFile(tx, { ...file, mediaType });
     const [paper] = await tx
       .insert(lotPapers)
-      .values({ lotId, kind: known, rawFileId: raw.id, note: note.slice(0, 500), addedBy: act.actor.id, addedByName: act.actor.printedName })
+      .values({
+        lotId,
+        kind: known,
+        rawFileId: raw.id,
+        note: note.slice(0, 500),
+        addedBy: act.actor.id,
+        addedByName: act.actor.printedName
+      })
       .returning({ id: lotPapers.id });
     await recordTrail(tx, act, {
       action: 'paper.attach',
@@ -189,16 +250,33 @@ export async function attachPaper(db: Database, act: Act, lotId: string, kind: s
 }
 
 /** Records the ethylene and diethylene glycol limit-test result of a high-risk lot. */
-export async function recordLimitTest(db: Database, act: Act, lotId: string, outcome: 'complies' | 'does_not_comply', reportNumber: string): Promise<Outcome<{ id: string }>> {
-  if (!can(act.actor, 'limit-test.record')) return refuse('not-allowed', 'Recording a limit test is for QA approvers.');
-  if (reportNumber.trim() === '') return refuse('bad-input', 'Enter the number of the test report.', { reportNumber: 'Enter the number of the test report' });
+export async function recordLimitTest(
+  db: Database,
+  act: Act,
+  lotId: string,
+  outcome: 'complies' | 'does_not_comply',
+  reportNumber: string
+): Promise<Outcome<{ id: string }>> {
+  if (!can(act.actor, 'limit-test.record'))
+    return refuse('not-allowed', 'Recording a limit test is for QA approvers.');
+  if (reportNumber.trim() === '')
+    return refuse('bad-input', 'Enter the number of the test report.', {
+      reportNumber: 'Enter the number of the test report'
+    });
   return transact(db, async (tx) => {
     const detail = await getLot(tx, act.actor.siteId, lotId);
     if (!detail) return refuse('not-found', 'There is no such lot.');
-    if (!detail.material.degEgHighRisk) return refuse('wrong-state', 'No limit test is asked for this material.');
+    if (!detail.material.degEgHighRisk)
+      return refuse('wrong-state', 'No limit test is asked for this material.');
     const [row] = await tx
       .insert(limitTests)
-      .values({ lotId, outcome, reportNumber: reportNumber.trim().slice(0, 80), recordedBy: act.actor.id, recordedByName: act.actor.printedName })
+      .values({
+        lotId,
+        outcome,
+        reportNumber: reportNumber.trim().slice(0, 80),
+        recordedBy: act.actor.id,
+        recordedByName: act.actor.printedName
+      })
       .returning({ id: limitTests.id });
     await recordTrail(tx, act, {
       action: 'limit-test.record',
@@ -213,15 +291,32 @@ export async function recordLimitTest(db: Database, act: Act, lotId: string, out
 }
 
 /** Sets containers of a lot aside (damage, doubt), with a reason. */
-export async function setContainersAside(db: Database, act: Act, lotId: string, containerIds: string[], reason: string): Promise<Outcome<{ count: number }>> {
-  if (!can(act.actor, 'container.set-aside')) return refuse('not-allowed', 'Setting containers aside is for operators and approvers.');
-  if (reason.trim().length < 3) return refuse('bad-input', 'Say why in a few words.', { reason: 'Say why in a few words' });
+export async function setContainersAside(
+  db: Database,
+  act: Act,
+  lotId: string,
+  containerIds: string[],
+  reason: string
+): Promise<Outcome<{ count: number }>> {
+  if (!can(act.actor, 'container.set-aside'))
+    return refuse('not-allowed', 'Setting containers aside is for operators and approvers.');
+  if (reason.trim().length < 3)
+    return refuse('bad-input', 'Say why in a few words.', { reason: 'Say why in a few words' });
   return transact(db, async (tx) => {
     const detail = await getLot(tx, act.actor.siteId, lotId);
     const chosen = detail?.containers.filter((row) => containerIds.includes(row.id)) ?? [];
     if (!detail || chosen.length === 0) return refuse('not-found', 'There is no such container in this lot.');
-    if (detail.lot.status === 'released' || detail.lot.status === 'rejected') return refuse('wrong-state', `The lot is ${detail.lot.status} already.`);
-    await tx.update(containers).set({ status: 'set_aside' }).where(inArray(containers.id, chosen.map((row) => row.id)));
+    if (detail.lot.status === 'released' || detail.lot.status === 'rejected')
+      return refuse('wrong-state', `The lot is ${detail.lot.status} already.`);
+    await tx
+      .update(containers)
+      .set({ status: 'set_aside' })
+      .where(
+        inArray(
+          containers.id,
+          chosen.map((row) => row.id)
+        )
+      );
     for (const row of chosen) {
       await recordTrail(tx, act, {
         action: 'container.set-aside',

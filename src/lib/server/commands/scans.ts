@@ -36,7 +36,12 @@ type Locked = NonNullable<Awaited<ReturnType<typeof lockContainerByBarcode>>>;
  * Records one scan: raw bytes, scan, decision, container status and trail in one transaction, so that no part
  * is ever on record without the others. Idempotent by the client-made scan id.
  */
-export async function recordScan(db: Database, act: Act, input: NewScan, file: IncomingFile): Promise<Outcome<RecordedScan>> {
+export async function recordScan(
+  db: Database,
+  act: Act,
+  input: NewScan,
+  file: IncomingFile
+): Promise<Outcome<RecordedScan>> {
   if (!can(act.actor, 'scan.record')) return refuse('not-allowed', 'Scanning containers is for operators.');
   const barcode = normaliseBarcode(input.barcode);
   const fault = barcodeFault(barcode);
@@ -52,16 +57,30 @@ export async function recordScan(db: Database, act: Act, input: NewScan, file: I
     if (refusal) return refusal;
     const target = locked as Locked;
     const standing = await getInstrument(tx, input.instrumentId);
-    if (!standing || standing.instrument.siteId !== act.actor.siteId) return refuse('bad-input', 'Choose an instrument of this site.', { instrumentId: 'Choose an instrument of this site' });
-    if (standing.instrument.status !== 'in_service') return refuse('wrong-state', `${standing.instrument.name} is out of service. Use another instrument.`);
+    if (!standing || standing.instrument.siteId !== act.actor.siteId)
+      return refuse('bad-input', 'Choose an instrument of this site.', {
+        instrumentId: 'Choose an instrument of this site'
+      });
+    if (standing.instrument.status !== 'in_service')
+      return refuse('wrong-state', `${standing.instrument.name} is out of service. Use another instrument.`);
     const method = await methodFor(tx, target);
-    if (!method) return refuse('wrong-state', `There is no effective method for ${target.material.name}. Set the goods aside and call the method owner.`);
+    if (!method)
+      return refuse(
+        'wrong-state',
+        `There is no effective method for ${target.material.name}. Set the goods aside and call the method owner.`
+      );
     return done(await writeScan(tx, act, input, file, target, standing, method));
   });
 }
 
 /** A file that is no spectrum is no measurement: it is kept with the reason, and no attempt is counted. */
-async function refuseFile(db: Database, act: Act, barcode: string, file: IncomingFile, problem: { code: string; message: string; line?: number }): Promise<Refusal> {
+async function refuseFile(
+  db: Database,
+  act: Act,
+  barcode: string,
+  file: IncomingFile,
+  problem: { code: string; message: string; line?: number }
+): Promise<Refusal> {
   const detail = problem.line === undefined ? problem.message : `Line ${problem.line}: ${problem.message}`;
   await transact(db, async (tx) => {
     const kept = problem.code === 'too-large' ? null : await keepRawFile(tx, file);
@@ -70,7 +89,13 @@ async function refuseFile(db: Database, act: Act, barcode: string, file: Incomin
       recordType: 'container',
       recordId: barcode,
       recordLabel: `Container ${barcode}`,
-      after: { fileName: file.fileName.slice(0, 255), size: file.bytes.byteLength, sha256: kept?.sha256 ?? null, problem: problem.code, detail }
+      after: {
+        fileName: file.fileName.slice(0, 255),
+        size: file.bytes.byteLength,
+        sha256: kept?.sha256 ?? null,
+        problem: problem.code,
+        detail
+      }
     });
   });
   const code = problem.code === 'too-large' ? 'too-large' : 'bad-file';
@@ -78,11 +103,24 @@ async function refuseFile(db: Database, act: Act, barcode: string, file: Incomin
 }
 
 /** The answer already given for this scan id, or a refusal when the id came with other content. */
-async function sameScanBefore(tx: Transaction, act: Act, scanId: string, barcode: string, file: IncomingFile): Promise<Outcome<RecordedScan> | null> {
+async function sameScanBefore(
+  tx: Transaction,
+  act: Act,
+  scanId: string,
+  barcode: string,
+  file: IncomingFile
+): Promise<Outcome<RecordedScan> | null> {
   const before = await getScan(tx, scanId);
   if (!before) return null;
-  const same = before.file.sha256 === sha256Hex(file.bytes) && before.container.barcode === barcode && before.scan.operatorId === act.actor.id;
-  if (!same) return refuse('key-reused', 'This scan id is on record with another file, container or person. Nothing was changed.');
+  const same =
+    before.file.sha256 === sha256Hex(file.bytes) &&
+    before.container.barcode === barcode &&
+    before.scan.operatorId === act.actor.id;
+  if (!same)
+    return refuse(
+      'key-reused',
+      'This scan id is on record with another file, container or person. Nothing was changed.'
+    );
   return done({
     scanId,
     containerNumber: before.container.number,
@@ -93,8 +131,16 @@ async function sameScanBefore(tx: Transaction, act: Act, scanId: string, barcode
   });
 }
 
-async function whyNotNow(tx: Transaction, act: Act, input: NewScan, locked: Locked | null): Promise<Refusal | null> {
-  if (!locked) return refuse('not-found', 'No container has this code. Check that the label is one of ours.', { barcode: 'No container has this code' });
+async function whyNotNow(
+  tx: Transaction,
+  act: Act,
+  input: NewScan,
+  locked: Locked | null
+): Promise<Refusal | null> {
+  if (!locked)
+    return refuse('not-found', 'No container has this code. Check that the label is one of ours.', {
+      barcode: 'No container has this code'
+    });
   const { container, lot, material } = locked;
   if (input.lotId !== undefined && lot.id !== input.lotId) {
     await recordTrail(tx, act, {
@@ -108,7 +154,8 @@ async function whyNotNow(tx: Transaction, act: Act, input: NewScan, locked: Lock
     const sentence = `This container belongs to lot ${lot.lotNumber} (${material.name}), not to the lot in the bay. Nothing was scanned.`;
     return refuse('wrong-state', sentence, { barcode: sentence });
   }
-  if (lot.status === 'released' || lot.status === 'rejected') return refuse('wrong-state', `Lot ${lot.lotNumber} is ${lot.status} already.`);
+  if (lot.status === 'released' || lot.status === 'rejected')
+    return refuse('wrong-state', `Lot ${lot.lotNumber} is ${lot.status} already.`);
   const [site] = await tx.select().from(sites).where(eq(sites.id, act.actor.siteId));
   const grant = await findOpenGrant(tx, container.id);
   const sentence = scanRefusal({
@@ -127,11 +174,20 @@ async function methodFor(tx: Transaction, target: Locked): Promise<StoredMethod 
   return id === null ? null : getStoredMethod(tx, id);
 }
 
-async function writeScan(tx: Transaction, act: Act, input: NewScan, file: IncomingFile, target: Locked, standing: InstrumentStanding, method: StoredMethod): Promise<RecordedScan> {
+async function writeScan(
+  tx: Transaction,
+  act: Act,
+  input: NewScan,
+  file: IncomingFile,
+  target: Locked,
+  standing: InstrumentStanding,
+  method: StoredMethod
+): Promise<RecordedScan> {
   const { container, lot, material } = target;
   const current = await loadCurrentLibrary(tx);
   if (!current) throw new Error('a method is effective but there is no library');
-  const checkState = standing.state === 'valid' ? 'valid' : standing.state === 'expired' ? 'expired' : 'missing';
+  const checkState =
+    standing.state === 'valid' ? 'valid' : standing.state === 'expired' ? 'expired' : 'missing';
   const check = standing.lastCheck;
   const correction =
     checkState === 'valid' && check && check.axisShiftCm1 !== null && check.axisScale !== null
@@ -171,7 +227,11 @@ async function writeScan(tx: Transaction, act: Act, input: NewScan, file: Incomi
     sentLate: input.sentLate
   });
   const decisionHash = await writeDecision(tx, input.scanId, decision, current.id, checkState, correction);
-  if (grant) await tx.update(repeatRequests).set({ usedByScanId: input.scanId }).where(eq(repeatRequests.id, grant.id));
+  if (grant)
+    await tx
+      .update(repeatRequests)
+      .set({ usedByScanId: input.scanId })
+      .where(eq(repeatRequests.id, grant.id));
   await recordTrail(tx, act, {
     action: 'scan.record',
     recordType: 'scan',
@@ -191,8 +251,24 @@ async function writeScan(tx: Transaction, act: Act, input: NewScan, file: Incomi
     },
     reason: attempt === 1 ? undefined : input.repeatReason
   });
-  await afterScan(tx, act, input, target, standing, decision, verdicts.filter((verdict) => verdict === 'invalid').length, method);
-  return { scanId: input.scanId, containerNumber: container.number, lotId: lot.id, attempt, decision, repeated: false };
+  await afterScan(
+    tx,
+    act,
+    input,
+    target,
+    standing,
+    decision,
+    verdicts.filter((verdict) => verdict === 'invalid').length,
+    method
+  );
+  return {
+    scanId: input.scanId,
+    containerNumber: container.number,
+    lotId: lot.id,
+    attempt,
+    decision,
+    repeated: false
+  };
 }
 
 function readAcquisition(file: IncomingFile, input: NewScan) {
@@ -200,7 +276,14 @@ function readAcquisition(file: IncomingFile, input: NewScan) {
   return read.ok ? read.acquisition : {};
 }
 
-async function writeDecision(tx: Transaction, scanId: string, decision: Decision, libraryId: string, checkState: 'valid' | 'missing' | 'expired', correction: { shiftCm1: number; scale: number } | null): Promise<string> {
+async function writeDecision(
+  tx: Transaction,
+  scanId: string,
+  decision: Decision,
+  libraryId: string,
+  checkState: 'valid' | 'missing' | 'expired',
+  correction: { shiftCm1: number; scale: number } | null
+): Promise<string> {
   const result = new TextEncoder().encode(canonicalJson(decision));
   const resultSha256 = sha256Hex(result);
   const scores = decision.scores;
@@ -227,7 +310,16 @@ async function writeDecision(tx: Transaction, scanId: string, decision: Decision
 }
 
 /** What a verdict does to the container and its lot: lock, deviation, review. */
-async function afterScan(tx: Transaction, act: Act, input: NewScan, target: Locked, standing: InstrumentStanding, decision: Decision, invalidBefore: number, method: StoredMethod): Promise<void> {
+async function afterScan(
+  tx: Transaction,
+  act: Act,
+  input: NewScan,
+  target: Locked,
+  standing: InstrumentStanding,
+  decision: Decision,
+  invalidBefore: number,
+  method: StoredMethod
+): Promise<void> {
   const { container, lot, material } = target;
   const [site] = await tx.select().from(sites).where(eq(sites.id, act.actor.siteId));
   const invalidSoFar = invalidBefore + (decision.verdict === 'invalid' ? 1 : 0);

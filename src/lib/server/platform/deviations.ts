@@ -14,7 +14,11 @@ export interface NewDeviation {
 }
 
 /** Opens a deviation in the caller's transaction; several nouns' commands do so (a fail, a withdrawn method …). */
-export async function openDeviation(tx: Transaction, act: Act, input: NewDeviation): Promise<{ id: string; number: string }> {
+export async function openDeviation(
+  tx: Transaction,
+  act: Act,
+  input: NewDeviation
+): Promise<{ id: string; number: string }> {
   const number = await nextNumber(tx, 'DEV');
   const [row] = await tx
     .insert(deviations)

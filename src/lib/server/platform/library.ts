@@ -3,7 +3,15 @@ import { encodeLibrary, makeLibraryEntry } from '../../identity/library';
 import type { LibraryEntry } from '../../identity/method';
 import { readSpectrumFile } from '../../spectra/formats/formats';
 import type { Transaction } from '../db/client';
-import { libraries, materials, methodVersionReferences, methodVersions, methods, rawFiles, referenceSpectra } from '../db/schema';
+import {
+  libraries,
+  materials,
+  methodVersionReferences,
+  methodVersions,
+  methods,
+  rawFiles,
+  referenceSpectra
+} from '../db/schema';
 import { sha256Hex } from './rawFiles';
 
 /**
@@ -13,7 +21,13 @@ import { sha256Hex } from './rawFiles';
  */
 export async function rebuildLibrary(tx: Transaction): Promise<{ id: string; sha256: string }> {
   const rows = await tx
-    .select({ materialId: materials.id, itemCode: materials.itemCode, name: materials.name, number: referenceSpectra.number, bytes: rawFiles.bytes })
+    .select({
+      materialId: materials.id,
+      itemCode: materials.itemCode,
+      name: materials.name,
+      number: referenceSpectra.number,
+      bytes: rawFiles.bytes
+    })
     .from(methodVersions)
     .innerJoin(methods, eq(methods.id, methodVersions.methodId))
     .innerJoin(materials, eq(materials.id, methods.materialId))

@@ -13,7 +13,10 @@ export interface IncomingFile {
 export const sha256Hex = (bytes: Uint8Array): string => createHash('sha256').update(bytes).digest('hex');
 
 /** Stores bytes as they came. In the caller's transaction, so that no record is without its bytes. */
-export async function keepRawFile(tx: Transaction, file: IncomingFile): Promise<{ id: string; sha256: string }> {
+export async function keepRawFile(
+  tx: Transaction,
+  file: IncomingFile
+): Promise<{ id: string; sha256: string }> {
   const sha256 = sha256Hex(file.bytes);
   const [row] = await tx
     .insert(rawFiles)

@@ -10,7 +10,11 @@ export function requireAct(locals: App.Locals): Act {
 
 /** A refused form: the same page again with the problem, the fields' sentences and what had been typed. */
 export function formFailure(refusal: Refusal, values: Record<string, unknown> = {}) {
-  return fail(REFUSALS[refusal.code].status, { problem: problemOf(refusal), fields: refusal.fields ?? {}, values });
+  return fail(REFUSALS[refusal.code].status, {
+    problem: problemOf(refusal),
+    fields: refusal.fields ?? {},
+    values
+  });
 }
 
 /** A refused API call as a problem document (RFC 9457). */
@@ -40,7 +44,10 @@ export async function fileOf(form: FormData, name: string) {
 /** Bytes as a download with a safe file name (RFC 6266); never sniffed, never run. */
 export function download(bytes: Uint8Array, fileName: string, mediaType: string, inline = false): Response {
   const ascii = fileName.replaceAll(/[^A-Za-z0-9._ -]/g, '_').slice(0, 150) || 'file';
-  const encoded = encodeURIComponent(fileName.slice(0, 150)).replaceAll(/['()*]/g, (character) => `%${character.charCodeAt(0).toString(16).toUpperCase()}`);
+  const encoded = encodeURIComponent(fileName.slice(0, 150)).replaceAll(
+    /['()*]/g,
+    (character) => `%${character.charCodeAt(0).toString(16).toUpperCase()}`
+  );
   const disposition = inline ? 'inline' : 'attachment';
   return new Response(Uint8Array.from(bytes), {
     headers: {

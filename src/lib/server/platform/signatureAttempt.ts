@@ -1,16 +1,23 @@
 import { and, eq, isNull, lt, or, sql } from 'drizzle-orm';
 import { SIGNATURE_ATTEMPTS } from '../../domain/accounts';
 import { refuse, type Refusal } from '../../domain/refusals';
+import type { Action } from '../../domain/roles';
 import type { Executor, Transaction } from '../db/client';
 import { sessions, users } from '../db/schema';
 import { transact } from '../db/transaction';
 import type { Act } from './act';
 import { acceptOneTimeCode } from './oneTimeCode';
 import { verifyPassword } from './password';
-import type { IdentityClaim } from './signing';
 import { recordTrail } from './trail';
 
 type Account = typeof users.$inferSelect;
+
+export interface IdentityClaim {
+  readonly password: string;
+  readonly oneTimeCode?: string;
+  /** What the signature is for; gives the role it is made in. */
+  readonly action: Action;
+}
 
 /** Why the person is not proven to be the account's owner; null where they are. Counts and records what failed. */
 export async function whyNotProven(

@@ -7,7 +7,7 @@ import type { SignatureMeaning } from '../../domain/signatures';
 import type { Executor, Transaction } from '../db/client';
 import { signatures } from '../db/schema';
 import { accountId, type Act } from './act';
-import { whyNotProven } from './signatureAttempt';
+import { whyNotProven, type IdentityClaim } from './signatureAttempt';
 import { signedAtText, signatureEntry } from './signatureEntry';
 import { recordTrail } from './trail';
 
@@ -35,13 +35,6 @@ interface Held {
 }
 
 const held = new WeakMap<SignatureProof, Held>();
-
-export interface IdentityClaim {
-  readonly password: string;
-  readonly oneTimeCode?: string;
-  /** What the signature is for; gives the role it is made in. */
-  readonly action: Action;
-}
 
 /**
  * Proves, at each signing anew (21 CFR 11.200), that the account's owner acts: the password, and the one-time

@@ -21,14 +21,21 @@ export interface CertificateInputs {
   readonly origin: string;
   readonly outcome: 'release' | 'reject';
   readonly reason: string;
-  readonly signature: { readonly printedName: string; readonly role: string; readonly meaning: string; readonly signedAt: Date; readonly sha256: string };
+  readonly signature: {
+    readonly printedName: string;
+    readonly role: string;
+    readonly meaning: string;
+    readonly signedAt: Date;
+    readonly sha256: string;
+  };
 }
 
 /** Gathers everything the certificate of a lot states, from the record alone. */
 export async function getCertificateData(db: Executor, inputs: CertificateInputs): Promise<CertificateData> {
   const { detail, signature } = inputs;
   const site = await getSite(db, detail.delivery.siteId);
-  if (!site || !detail.lot.methodVersionId) throw new Error(`lot ${detail.lot.lotNumber} has no site or method`);
+  if (!site || !detail.lot.methodVersionId)
+    throw new Error(`lot ${detail.lot.lotNumber} has no site or method`);
   const version = await getMethodVersion(db, detail.lot.methodVersionId);
   const stored = await getStoredMethod(db, detail.lot.methodVersionId);
   if (!version || !stored) throw new Error(`lot ${detail.lot.lotNumber} has lost its method`);
@@ -53,11 +60,16 @@ export async function getCertificateData(db: Executor, inputs: CertificateInputs
       expiresOn: detail.lot.expiresOn,
       retestOn: detail.lot.retestOn,
       containerCount: detail.lot.containerCount,
-      samplingPlan: detail.lot.samplingPlan === 'every_container' ? 'every container' : 'reduced, by approved justification'
+      samplingPlan:
+        detail.lot.samplingPlan === 'every_container'
+          ? 'every container'
+          : 'reduced, by approved justification'
     },
     material: detail.material,
     highRisk: detail.material.degEgHighRisk,
-    limitTest: detail.limitTests[0] ? `${detail.limitTests[0].outcome === 'complies' ? 'complies' : 'does not comply'}, report ${detail.limitTests[0].reportNumber}` : null,
+    limitTest: detail.limitTests[0]
+      ? `${detail.limitTests[0].outcome === 'complies' ? 'complies' : 'does not comply'}, report ${detail.limitTests[0].reportNumber}`
+      : null,
     method: {
       code: version.method.code,
       version: version.version.version,
@@ -70,7 +82,11 @@ export async function getCertificateData(db: Executor, inputs: CertificateInputs
     attempts: detail.scans.map((scan) => attemptOf(scan, results.get(scan.id))),
     checks: await loadChecks(db, detail),
     plots: await loadPlots(db, detail, results),
-    deviations: detail.deviations.map((row) => ({ number: row.number, title: row.title, conclusion: row.phase === 'closed' ? `Closed: ${row.cause ?? ''}` : 'Open.' })),
+    deviations: detail.deviations.map((row) => ({
+      number: row.number,
+      title: row.title,
+      conclusion: row.phase === 'closed' ? `Closed: ${row.cause ?? ''}` : 'Open.'
+    })),
     disposition: { outcome: inputs.outcome, reason: inputs.reason },
     signature: {
       printedName: signature.printedName,
@@ -86,12 +102,16 @@ export async function getCertificateData(db: Executor, inputs: CertificateInputs
 async function loadResults(db: Executor, detail: LotDetail): Promise<Map<string, Decision>> {
   const ids = detail.scans.map((scan) => scan.id);
   if (ids.length === 0) return new Map();
-  const rows = await db.select({ scanId: decisions.scanId, result: decisions.result }).from(decisions).where(inArray(decisions.scanId, ids));
+  const rows = await db
+    .select({ scanId: decisions.scanId, result: decisions.result })
+    .from(decisions)
+    .where(inArray(decisions.scanId, ids));
   return new Map(rows.map((row) => [row.scanId, parseDecision(row.result)]));
 }
 
 function attemptOf(scan: LotDetail['scans'][number], decision: Decision | undefined): CertificateAttempt {
-  const limitOf = (code: string) => decision?.criteria.find((criterion) => criterion.code === code)?.limit ?? null;
+  const limitOf = (code: string) =>
+    decision?.criteria.find((criterion) => criterion.code === code)?.limit ?? null;
   return {
     containerNumber: scan.containerNumber,
     attempt: scan.attempt,
@@ -106,7 +126,12 @@ function attemptOf(scan: LotDetail['scans'][number], decision: Decision | undefi
     instrument: scan.instrument,
     operatorName: scan.operatorName,
     recordedAt: scan.recordedAt,
-    reason: [decision?.explanation.reason ?? '', scan.repeatReason ? `Repeated because: ${scan.repeatReason}` : ''].filter((part) => part !== '').join(' ')
+    reason: [
+      decision?.explanation.reason ?? '',
+      scan.repeatReason ? `Repeated because: ${scan.repeatReason}` : ''
+    ]
+      .filter((part) => part !== '')
+      .join(' ')
   };
 }
 
@@ -127,10 +152,19 @@ async function loadChecks(db: Executor, detail: LotDetail): Promise<CertificateD
   return rows.map(({ passed, ...row }) => ({ ...row, outcome: passed ? 'passed' : 'failed' }));
 }
 
-async function loadPlots(db: Executor, detail: LotDetail, results: Map<string, Decision>): Promise<CertificatePlot[]> {
-  const margin = (id: string) => Math.min(...(results.get(id)?.criteria ?? []).map((criterion) => criterion.margin));
-  const passes = detail.scans.filter((scan) => scan.verdict === 'pass').sort((a, b) => margin(a.id) - margin(b.id));
-  const chosen: { scan: LotDetail['scans'][number]; why: string }[] = detail.scans.filter((scan) => scan.verdict === 'fail').map((scan) => ({ scan, why: 'did not pass' }));
+async function loadPlots(
+  db: Executor,
+  detail: LotDetail,
+  results: Map<string, Decision>
+): Promise<CertificatePlot[]> {
+  const margin = (id: string) =>
+    Math.min(...(results.get(id)?.criteria ?? []).map((criterion) => criterion.margin));
+  const passes = detail.scans
+    .filter((scan) => scan.verdict === 'pass')
+    .sort((a, b) => margin(a.id) - margin(b.id));
+  const chosen: { scan: LotDetail['scans'][number]; why: string }[] = detail.scans
+    .filter((scan) => scan.verdict === 'fail')
+    .map((scan) => ({ scan, why: 'did not pass' }));
   if (passes.length > 0) chosen.push({ scan: passes[0], why: 'pass closest to a limit' });
   if (passes.length > 2) chosen.push({ scan: passes[Math.floor(passes.length / 2)], why: 'typical pass' });
   const plots: CertificatePlot[] = [];

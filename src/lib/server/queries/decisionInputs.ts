@@ -7,12 +7,18 @@ import { getStoredMethod } from './methods';
 import { getRawFile, getScan } from './scans';
 
 /** Everything a stored scan was decided from, gathered again from the record alone. */
-export async function loadDecisionInputs(db: Executor, scanId: string): Promise<{ request: DecideRequest; storedSha256: string; storedEngine: string } | null> {
+export async function loadDecisionInputs(
+  db: Executor,
+  scanId: string
+): Promise<{ request: DecideRequest; storedSha256: string; storedEngine: string } | null> {
   const found = await getScan(db, scanId);
   if (!found) return null;
   const file = await getRawFile(db, found.file.id);
   const method = await getStoredMethod(db, found.scan.methodVersionId);
-  const [library] = await db.select({ sha256: libraries.sha256 }).from(libraries).where(eq(libraries.id, found.decision.libraryId));
+  const [library] = await db
+    .select({ sha256: libraries.sha256 })
+    .from(libraries)
+    .where(eq(libraries.id, found.decision.libraryId));
   if (!file || !method || !library) throw new Error(`scan ${scanId} has lost part of its record`);
   const { axisShiftCm1, axisScale, checkState } = found.decision;
   return {
@@ -27,7 +33,11 @@ export async function loadDecisionInputs(db: Executor, scanId: string): Promise<
       materialId: found.material.id,
       rawSha256: file.sha256,
       instrument: { excitationNm: found.instrument.excitationNm },
-      check: { state: checkState, correction: axisShiftCm1 === null || axisScale === null ? null : { shiftCm1: axisShiftCm1, scale: axisScale } }
+      check: {
+        state: checkState,
+        correction:
+          axisShiftCm1 === null || axisScale === null ? null : { shiftCm1: axisShiftCm1, scale: axisScale }
+      }
     }
   };
 }

@@ -45,8 +45,14 @@ export async function getIntakeChoices(db: Executor) {
       .from(materials)
       .where(eq(materials.status, 'active'))
       .orderBy(asc(materials.name)),
-    suppliers: await db.select({ id: suppliers.id, name: suppliers.name }).from(suppliers).orderBy(asc(suppliers.name)),
-    manufacturers: await db.select({ id: manufacturers.id, name: manufacturers.name }).from(manufacturers).orderBy(asc(manufacturers.name)),
+    suppliers: await db
+      .select({ id: suppliers.id, name: suppliers.name })
+      .from(suppliers)
+      .orderBy(asc(suppliers.name)),
+    manufacturers: await db
+      .select({ id: manufacturers.id, name: manufacturers.name })
+      .from(manufacturers)
+      .orderBy(asc(manufacturers.name)),
     sources: await db
       .select({
         materialId: approvedSources.materialId,

@@ -35,5 +35,9 @@ export async function getDeviation(db: Executor, id: string) {
 }
 
 export async function listDeviationNotes(db: Executor, deviationId: string) {
-  return db.select().from(deviationNotes).where(eq(deviationNotes.deviationId, deviationId)).orderBy(asc(deviationNotes.at));
+  return db
+    .select()
+    .from(deviationNotes)
+    .where(eq(deviationNotes.deviationId, deviationId))
+    .orderBy(asc(deviationNotes.at));
 }

@@ -7,7 +7,11 @@ import { loadDecisionInputs } from './decisionInputs';
  * The plot of a scan over its references: computed from the stored bytes whenever it is shown. A person who
  * may not learn of rivals gets no markers beyond the claimed material's own bands.
  */
-export async function evidenceForActor(db: Executor, actor: Pick<Actor, 'roles'>, scanId: string): Promise<EvidenceView | null> {
+export async function evidenceForActor(
+  db: Executor,
+  actor: Pick<Actor, 'roles'>,
+  scanId: string
+): Promise<EvidenceView | null> {
   const inputs = await loadDecisionInputs(db, scanId);
   if (!inputs) return null;
   const view = evidenceOf(inputs.request);

@@ -28,7 +28,11 @@ export async function getInstrument(db: Executor, id: string): Promise<Instrumen
 
 /** Every instrument of the site with its standing. */
 export async function listInstruments(db: Executor, siteId: string): Promise<InstrumentStanding[]> {
-  const rows = await db.select().from(instruments).where(eq(instruments.siteId, siteId)).orderBy(asc(instruments.name));
+  const rows = await db
+    .select()
+    .from(instruments)
+    .where(eq(instruments.siteId, siteId))
+    .orderBy(asc(instruments.name));
   const last = await db
     .selectDistinctOn([performanceChecks.instrumentId])
     .from(performanceChecks)
@@ -40,7 +44,11 @@ export async function listInstruments(db: Executor, siteId: string): Promise<Ins
   });
 }
 
-export async function listChecks(db: Executor, instrumentId: string, limit = 50): Promise<PerformanceCheck[]> {
+export async function listChecks(
+  db: Executor,
+  instrumentId: string,
+  limit = 50
+): Promise<PerformanceCheck[]> {
   return db
     .select()
     .from(performanceChecks)

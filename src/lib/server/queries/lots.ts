@@ -38,7 +38,11 @@ const lotColumns = {
 };
 
 /** Lots of the site, newest first; optionally only those in some states. */
-export async function listLots(db: Executor, siteId: string, statuses?: (typeof lots.$inferSelect)['status'][]) {
+export async function listLots(
+  db: Executor,
+  siteId: string,
+  statuses?: (typeof lots.$inferSelect)['status'][]
+) {
   return db
     .select(lotColumns)
     .from(lots)
@@ -64,7 +68,13 @@ export async function listLotsOfDelivery(db: Executor, deliveryId: string) {
 /** A lot with everything its page shows, or null (also for another site's). */
 export async function getLot(db: Executor, siteId: string, id: string) {
   const [head] = await db
-    .select({ lot: lots, material: materials, manufacturer: manufacturers, delivery: deliveries, supplier: suppliers })
+    .select({
+      lot: lots,
+      material: materials,
+      manufacturer: manufacturers,
+      delivery: deliveries,
+      supplier: suppliers
+    })
     .from(lots)
     .innerJoin(materials, eq(materials.id, lots.materialId))
     .innerJoin(manufacturers, eq(manufacturers.id, lots.manufacturerId))
@@ -74,11 +84,23 @@ export async function getLot(db: Executor, siteId: string, id: string) {
   if (!head) return null;
   return {
     ...head,
-    containers: await db.select().from(containers).where(eq(containers.lotId, id)).orderBy(asc(containers.number)),
+    containers: await db
+      .select()
+      .from(containers)
+      .where(eq(containers.lotId, id))
+      .orderBy(asc(containers.number)),
     scans: await listScans(db, id),
     papers: await listPapers(db, id),
-    limitTests: await db.select().from(limitTests).where(eq(limitTests.lotId, id)).orderBy(desc(limitTests.recordedAt)),
-    deviations: await db.select().from(deviations).where(eq(deviations.lotId, id)).orderBy(desc(deviations.openedAt)),
+    limitTests: await db
+      .select()
+      .from(limitTests)
+      .where(eq(limitTests.lotId, id))
+      .orderBy(desc(limitTests.recordedAt)),
+    deviations: await db
+      .select()
+      .from(deviations)
+      .where(eq(deviations.lotId, id))
+      .orderBy(desc(deviations.openedAt)),
     dispositions: await listDispositions(db, id)
   };
 }
@@ -147,7 +169,10 @@ export async function getReleaseConditions(
 ): Promise<readonly ReleaseCondition[]> {
   const planned = detail.containers.filter((row) => row.inPlan === 'yes');
   const [version] = detail.lot.methodVersionId
-    ? await db.select({ status: methodVersions.status }).from(methodVersions).where(eq(methodVersions.id, detail.lot.methodVersionId))
+    ? await db
+        .select({ status: methodVersions.status })
+        .from(methodVersions)
+        .where(eq(methodVersions.id, detail.lot.methodVersionId))
     : [];
   const [{ waiting }] = await db
     .select({ waiting: count() })
@@ -158,8 +183,12 @@ export async function getReleaseConditions(
     status: detail.lot.status,
     containersPlanned: planned.length,
     containersPassed: planned.filter((row) => row.status === 'pass').length,
-    containersBlocked: detail.containers.filter((row) => !['pass', 'awaiting'].includes(row.status)).map((row) => row.number),
-    withoutCheck: detail.scans.filter((scan) => scan.verdict === 'pass' && scan.checkState !== 'valid').map((scan) => scan.containerNumber),
+    containersBlocked: detail.containers
+      .filter((row) => !['pass', 'awaiting'].includes(row.status))
+      .map((row) => row.number),
+    withoutCheck: detail.scans
+      .filter((scan) => scan.verdict === 'pass' && scan.checkState !== 'valid')
+      .map((scan) => scan.containerNumber),
     papers: detail.papers.filter((paper) => paper.kind === 'certificate_of_analysis').length,
     openDeviations: detail.deviations.filter((row) => row.phase !== 'closed').map((row) => row.number),
     openRepeats: waiting,

@@ -1,7 +1,14 @@
 import { and, desc, eq, inArray } from 'drizzle-orm';
 import type { FittedMethod } from '../../identity/method';
 import type { Executor } from '../db/client';
-import { libraries, materials, methodVersionReferences, methodVersions, methods, referenceSpectra } from '../db/schema';
+import {
+  libraries,
+  materials,
+  methodVersionReferences,
+  methodVersions,
+  methods,
+  referenceSpectra
+} from '../db/schema';
 
 /** A fitted method as it is stored: the parsed bundle with its hash. */
 export interface StoredMethod {
@@ -122,9 +129,19 @@ export async function listVersionReferences(db: Executor, versionId: string) {
 }
 
 /** Versions in one of the given states, newest first. */
-export async function listVersionsInState(db: Executor, statuses: (typeof methodVersions.$inferSelect)['status'][]) {
+export async function listVersionsInState(
+  db: Executor,
+  statuses: (typeof methodVersions.$inferSelect)['status'][]
+) {
   return db
-    .select({ id: methodVersions.id, code: methods.code, version: methodVersions.version, status: methodVersions.status, authorId: methodVersions.authorId, submittedAt: methodVersions.submittedAt })
+    .select({
+      id: methodVersions.id,
+      code: methods.code,
+      version: methodVersions.version,
+      status: methodVersions.status,
+      authorId: methodVersions.authorId,
+      submittedAt: methodVersions.submittedAt
+    })
     .from(methodVersions)
     .innerJoin(methods, eq(methods.id, methodVersions.methodId))
     .where(inArray(methodVersions.status, statuses))

@@ -8,6 +8,9 @@ export async function getSite(db: Executor, id: string) {
   return row ?? null;
 }
 
+/** Qualified by hand: in a query of one table the builder writes bare column names, which a subquery would take as its own. */
+const ownId = sql.raw('"users"."id"');
+
 /** Accounts of the site with their open roles and live sessions. */
 export async function listPeople(db: Executor, siteId: string) {
   return db
@@ -18,9 +21,14 @@ export async function listPeople(db: Executor, siteId: string) {
       email: users.email,
       status: users.status,
       proofedAt: users.proofedAt,
-      roles: sql<RoleId[]>`coalesce((select array_agg(g.role order by g.role) from ${roleGrants} g where g.user_id = ${users.id} and g.ended_at is null), '{}')`,
-      sessions: sql<number>`(select count(*)::int from ${sessions} s where s.user_id = ${users.id} and s.revoked_at is null and s.expires_at > clock_timestamp())`,
-      lastSeenAt: sql<Date | null>`(select max(s.last_seen_at) from ${sessions} s where s.user_id = ${users.id})`.mapWith((value: string | null) => (value === null ? null : new Date(value)))
+      roles: sql<
+        RoleId[]
+      >`coalesce((select array_agg(g.role order by g.role) from ${roleGrants} g where g.user_id = ${ownId} and g.ended_at is null), '{}')`,
+      sessions: sql<number>`(select count(*)::int from ${sessions} s where s.user_id = ${ownId} and s.revoked_at is null and s.expires_at > clock_timestamp())`,
+      lastSeenAt:
+        sql<Date | null>`(select max(s.last_seen_at) from ${sessions} s where s.user_id = ${ownId})`.mapWith(
+          (value: string | null) => (value === null ? null : new Date(value))
+        )
     })
     .from(users)
     .where(eq(users.siteId, siteId))

@@ -30,10 +30,18 @@ export async function listReferences(db: Executor, materialId: string) {
 }
 
 /** References with their spectra, as the fitter takes them. A stored file that no longer reads is a bug. */
-export async function loadLabelledReferences(db: Executor, referenceIds: string[]): Promise<LabelledReference[]> {
+export async function loadLabelledReferences(
+  db: Executor,
+  referenceIds: string[]
+): Promise<LabelledReference[]> {
   if (referenceIds.length === 0) return [];
   const rows = await db
-    .select({ id: referenceSpectra.id, number: referenceSpectra.number, sourceLot: referenceSpectra.sourceLot, bytes: rawFiles.bytes })
+    .select({
+      id: referenceSpectra.id,
+      number: referenceSpectra.number,
+      sourceLot: referenceSpectra.sourceLot,
+      bytes: rawFiles.bytes
+    })
     .from(referenceSpectra)
     .innerJoin(rawFiles, eq(rawFiles.id, referenceSpectra.rawFileId))
     .where(inArray(referenceSpectra.id, referenceIds))
@@ -46,7 +54,10 @@ export async function loadLabelledReferences(db: Executor, referenceIds: string[
 }
 
 /** Accepted references of a material, at an excitation wavelength. */
-export async function listAcceptedReferenceIds(db: Executor, materialId: string): Promise<{ id: string; excitationNm: number }[]> {
+export async function listAcceptedReferenceIds(
+  db: Executor,
+  materialId: string
+): Promise<{ id: string; excitationNm: number }[]> {
   const rows = await db
     .select({ id: referenceSpectra.id, excitationNm: referenceSpectra.excitationNm })
     .from(referenceSpectra)

@@ -1,7 +1,16 @@
 import { and, asc, desc, eq, inArray, isNull } from 'drizzle-orm';
 import type { Decision } from '../../identity/decision';
 import type { Executor } from '../db/client';
-import { containers, decisions, instruments, lots, materials, rawFiles, repeatRequests, scans } from '../db/schema';
+import {
+  containers,
+  decisions,
+  instruments,
+  lots,
+  materials,
+  rawFiles,
+  repeatRequests,
+  scans
+} from '../db/schema';
 
 export interface ScanSummary {
   readonly id: string;
@@ -81,7 +90,8 @@ export async function findOpenGrant(db: Executor, containerId: string) {
 }
 
 /** The decision as stored: parsed from its canonical bytes. */
-export const parseDecision = (result: Uint8Array): Decision => JSON.parse(new TextDecoder().decode(result)) as Decision;
+export const parseDecision = (result: Uint8Array): Decision =>
+  JSON.parse(new TextDecoder().decode(result)) as Decision;
 
 /** A scan with everything its evidence page shows. */
 export async function getScan(db: Executor, id: string) {

@@ -24,19 +24,27 @@ function conditions(filter: TrailFilter): SQL | undefined {
   const parts: (SQL | undefined)[] = [];
   if (filter.who) parts.push(ilike(trailEntries.actorName, literal(filter.who)));
   if (filter.action) parts.push(eq(trailEntries.action, filter.action));
-  if (filter.record) parts.push(or(ilike(trailEntries.recordLabel, literal(filter.record)), eq(trailEntries.recordId, filter.record)));
+  if (filter.record)
+    parts.push(
+      or(ilike(trailEntries.recordLabel, literal(filter.record)), eq(trailEntries.recordId, filter.record))
+    );
   if (filter.recordType) parts.push(eq(trailEntries.recordType, filter.recordType));
   if (filter.recordId) parts.push(eq(trailEntries.recordId, filter.recordId));
   if (filter.lotId) parts.push(eq(trailEntries.lotId, filter.lotId));
-  if (filter.from) parts.push(gte(trailEntries.at, sql`(${filter.from}::date)::timestamp at time zone ${filter.timeZone}`));
-  if (filter.to) parts.push(lt(trailEntries.at, sql`(${filter.to}::date + 1)::timestamp at time zone ${filter.timeZone}`));
+  if (filter.from)
+    parts.push(gte(trailEntries.at, sql`(${filter.from}::date)::timestamp at time zone ${filter.timeZone}`));
+  if (filter.to)
+    parts.push(lt(trailEntries.at, sql`(${filter.to}::date + 1)::timestamp at time zone ${filter.timeZone}`));
   return and(...parts);
 }
 
 /** One page of the trail, newest first, with how many entries match in all. */
 export async function listTrail(db: Executor, filter: TrailFilter, page: number) {
   const where = conditions(filter);
-  const [{ total }] = await db.select({ total: sql<number>`count(*)::int` }).from(trailEntries).where(where);
+  const [{ total }] = await db
+    .select({ total: sql<number>`count(*)::int` })
+    .from(trailEntries)
+    .where(where);
   const entries = await db
     .select({ entry: trailEntries, leafIndex: trailLeaves.leafIndex })
     .from(trailEntries)
@@ -50,7 +58,10 @@ export async function listTrail(db: Executor, filter: TrailFilter, page: number)
 
 /** Actions that occur in the trail, for the filter. */
 export async function listTrailActions(db: Executor): Promise<string[]> {
-  const rows = await db.selectDistinct({ action: trailEntries.action }).from(trailEntries).orderBy(trailEntries.action);
+  const rows = await db
+    .selectDistinct({ action: trailEntries.action })
+    .from(trailEntries)
+    .orderBy(trailEntries.action);
   return rows.map((row) => row.action);
 }
 

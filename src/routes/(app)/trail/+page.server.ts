@@ -1,6 +1,7 @@
 import { can } from '$lib/domain/roles';
 import { database } from '$lib/server/db/client';
 import { requireAct } from '$lib/server/platform/respond';
+import { recordTrail } from '$lib/server/platform/trail';
 import { verifyTrail } from '$lib/server/platform/verifyTrail';
 import { getSealState, listTrail, listTrailActions, TRAIL_PAGE } from '$lib/server/queries/trail';
 import type { Actions, PageServerLoad } from './$types';
@@ -39,5 +40,16 @@ export const load: PageServerLoad = async ({ locals, url }) => {
 };
 
 export const actions: Actions = {
-  verify: async () => ({ verification: await verifyTrail(database()) })
+  verify: async ({ locals }) => {
+    const db = database();
+    const verification = await verifyTrail(db);
+    await recordTrail(db, requireAct(locals), {
+      action: 'trail.verify',
+      recordType: 'trail',
+      recordId: String(verification.sealed),
+      recordLabel: 'Audit trail',
+      after: { ok: verification.ok, sentence: verification.sentence }
+    });
+    return { verification };
+  }
 };

@@ -36,7 +36,9 @@ export const instruments = pgTable(
     location: text().notNull(),
     status: text({ enum: INSTRUMENT_STATUSES }).notNull().default('in_service'),
     nextQualificationOn: date(),
-    createdAt: instant().notNull().default(sql`clock_timestamp()`)
+    createdAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [
     check('instruments_excitation_sane', sql`${t.excitationNm} between 200 and 2000`),
@@ -55,7 +57,9 @@ export const toleranceSets = pgTable(
     /** Band position cm-1 to allowed deviation cm-1. */
     bands: jsonb().$type<{ shiftCm1: number; toleranceCm1: number }[]>().notNull(),
     source: text().notNull(),
-    effectiveFrom: instant().notNull().default(sql`clock_timestamp()`),
+    effectiveFrom: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     approvedBy: uuid().references(() => users.id, { onDelete: 'restrict' })
   },
   (t) => [uniqueIndex('tolerance_sets_version').on(t.name, t.standard, t.version)]
@@ -84,7 +88,9 @@ export const performanceChecks = pgTable(
       .notNull()
       .references(() => users.id, { onDelete: 'restrict' }),
     performedByName: text().notNull(),
-    performedAt: instant().notNull().default(sql`clock_timestamp()`),
+    performedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     validUntil: instant()
   },
   (t) => [
@@ -105,7 +111,9 @@ export const instrumentLog = pgTable(
     entry: text().notNull(),
     byUserId: uuid().references(() => users.id, { onDelete: 'restrict' }),
     byName: text().notNull(),
-    at: instant().notNull().default(sql`clock_timestamp()`)
+    at: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [index('instrument_log_instrument').on(t.instrumentId, t.at)]
 );

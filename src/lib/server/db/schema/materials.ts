@@ -1,6 +1,11 @@
 import { sql } from 'drizzle-orm';
 import { boolean, check, date, index, jsonb, pgTable, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
-import { MATERIAL_STATUSES, RAMAN_SUITABILITIES, REFERENCE_KINDS, REFERENCE_STATUSES } from '../../../domain/materials';
+import {
+  MATERIAL_STATUSES,
+  RAMAN_SUITABILITIES,
+  REFERENCE_KINDS,
+  REFERENCE_STATUSES
+} from '../../../domain/materials';
 import { idKey, instant } from './columns';
 import { instruments } from './instruments';
 import { users } from './people';
@@ -23,9 +28,14 @@ export const materials = pgTable(
     /** Ethylene and diethylene glycol limit test asked for before release. */
     degEgHighRisk: boolean().notNull().default(false),
     /** Packaging it may be scanned through. */
-    packaging: text().array().notNull().default(sql`'{}'`),
+    packaging: text()
+      .array()
+      .notNull()
+      .default(sql`'{}'`),
     status: text({ enum: MATERIAL_STATUSES }).notNull().default('active'),
-    createdAt: instant().notNull().default(sql`clock_timestamp()`),
+    createdAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     createdBy: uuid().references(() => users.id, { onDelete: 'restrict' })
   },
   (t) => [
@@ -40,7 +50,9 @@ export const suppliers = pgTable('suppliers', {
   id: idKey(),
   code: text().notNull().unique(),
   name: text().notNull(),
-  createdAt: instant().notNull().default(sql`clock_timestamp()`)
+  createdAt: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`)
 });
 
 export const manufacturers = pgTable('manufacturers', {
@@ -48,7 +60,9 @@ export const manufacturers = pgTable('manufacturers', {
   code: text().notNull().unique(),
   name: text().notNull(),
   country: text().notNull().default(''),
-  createdAt: instant().notNull().default(sql`clock_timestamp()`)
+  createdAt: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`)
 });
 
 /** Who may supply what from whom. */
@@ -65,7 +79,9 @@ export const approvedSources = pgTable(
     manufacturerId: uuid()
       .notNull()
       .references(() => manufacturers.id, { onDelete: 'restrict' }),
-    approvedAt: instant().notNull().default(sql`clock_timestamp()`),
+    approvedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     withdrawnAt: instant()
   },
   (t) => [
@@ -99,7 +115,9 @@ export const referenceSpectra = pgTable(
     status: text({ enum: REFERENCE_STATUSES }).notNull().default('draft'),
     statusReason: text(),
     addedBy: uuid().references(() => users.id, { onDelete: 'restrict' }),
-    addedAt: instant().notNull().default(sql`clock_timestamp()`)
+    addedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [
     index('reference_spectra_material').on(t.materialId, t.status),

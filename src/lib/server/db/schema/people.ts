@@ -31,7 +31,9 @@ export const sites = pgTable('sites', {
   reducedSamplingAllowed: boolean().notNull().default(false),
   /** Set by the demo seed; marks every page and PDF. */
   demo: boolean().notNull().default(false),
-  createdAt: instant().notNull().default(sql`clock_timestamp()`)
+  createdAt: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`)
 });
 
 /** One account is one named human; accounts are disabled, never deleted. */
@@ -60,7 +62,9 @@ export const users = pgTable(
     oneTimeCodeSecret: text(),
     oneTimeCodeLastStep: integer(),
     preferences: jsonb().$type<Record<string, unknown>>().notNull().default({}),
-    createdAt: instant().notNull().default(sql`clock_timestamp()`)
+    createdAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [
     uniqueIndex('users_user_name_key').on(sql`lower(${t.userName})`),
@@ -80,16 +84,23 @@ export const roleGrants = pgTable(
     requestedBy: uuid().references(() => users.id, { onDelete: 'restrict' }),
     grantedBy: uuid().references(() => users.id, { onDelete: 'restrict' }),
     reason: text().notNull(),
-    grantedAt: instant().notNull().default(sql`clock_timestamp()`),
+    grantedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     endedAt: instant(),
     endedBy: uuid().references(() => users.id, { onDelete: 'restrict' }),
     endReason: text()
   },
   (t) => [
-    check('role_grants_role_known', sql`${t.role} in ('operator','method_owner','approver','auditor','administrator')`),
+    check(
+      'role_grants_role_known',
+      sql`${t.role} in ('operator','method_owner','approver','auditor','administrator')`
+    ),
     check('role_grants_not_own', sql`${t.grantedBy} is null or ${t.grantedBy} <> ${t.userId}`),
     check('role_grants_end_reasoned', sql`(${t.endedAt} is null) = (${t.endReason} is null)`),
-    uniqueIndex('role_grants_one_open').on(t.userId, t.role).where(sql`${t.endedAt} is null`)
+    uniqueIndex('role_grants_one_open')
+      .on(t.userId, t.role)
+      .where(sql`${t.endedAt} is null`)
   ]
 );
 
@@ -99,8 +110,12 @@ export const sessions = pgTable(
   {
     tokenHash: text().primaryKey(),
     userId: uuid().notNull(),
-    createdAt: instant().notNull().default(sql`clock_timestamp()`),
-    lastSeenAt: instant().notNull().default(sql`clock_timestamp()`),
+    createdAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
+    lastSeenAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     expiresAt: instant().notNull(),
     revokedAt: instant(),
     revokedWhy: text(),
@@ -125,7 +140,9 @@ export const apiTokens = pgTable('api_tokens', {
   ownerId: uuid()
     .notNull()
     .references(() => users.id, { onDelete: 'restrict' }),
-  createdAt: instant().notNull().default(sql`clock_timestamp()`),
+  createdAt: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`),
   lastUsedAt: instant(),
   revokedAt: instant()
 });
@@ -139,7 +156,9 @@ export const cautionAcknowledgements = pgTable(
       .notNull()
       .references(() => users.id, { onDelete: 'restrict' }),
     caution: text().notNull(),
-    acknowledgedAt: instant().notNull().default(sql`clock_timestamp()`)
+    acknowledgedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [index('caution_acknowledgements_user').on(t.userId, t.caution, t.acknowledgedAt)]
 );

@@ -13,7 +13,9 @@ export const rawFiles = pgTable(
     /** Name the sender gave it: shown, never used as a path. */
     fileName: text().notNull(),
     mediaType: text().notNull(),
-    receivedAt: instant().notNull().default(sql`clock_timestamp()`)
+    receivedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [
     index('raw_files_sha256').on(t.sha256),

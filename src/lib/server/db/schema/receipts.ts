@@ -30,7 +30,9 @@ export const deliveries = pgTable(
       .notNull()
       .references(() => users.id, { onDelete: 'restrict' }),
     receivedByName: text().notNull(),
-    receivedAt: instant().notNull().default(sql`clock_timestamp()`)
+    receivedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [uniqueIndex('deliveries_note_once').on(t.supplierId, t.deliveryNote)]
 );
@@ -59,11 +61,16 @@ export const lots = pgTable(
     status: text({ enum: LOT_STATUSES }).notNull().default('quarantine'),
     /** The version the lot's first scan used: a later version never cuts in mid-lot. */
     methodVersionId: uuid().references(() => methodVersions.id, { onDelete: 'restrict' }),
-    createdAt: instant().notNull().default(sql`clock_timestamp()`)
+    createdAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [
     check('lots_count_sane', sql`${t.containerCount} between 1 and 2000`),
-    check('lots_reduced_plan_reasoned', sql`${t.samplingPlan} = 'every_container' or length(${t.samplingReason}) > 0`),
+    check(
+      'lots_reduced_plan_reasoned',
+      sql`${t.samplingPlan} = 'every_container' or length(${t.samplingReason}) > 0`
+    ),
     index('lots_delivery').on(t.deliveryId),
     index('lots_status').on(t.status)
   ]
@@ -82,9 +89,14 @@ export const containers = pgTable(
     status: text({ enum: CONTAINER_STATUSES }).notNull().default('awaiting'),
     /** Visual examination on receipt. */
     condition: text().notNull().default('sound'),
-    inPlan: text({ enum: ['yes', 'no'] }).notNull().default('yes')
+    inPlan: text({ enum: ['yes', 'no'] })
+      .notNull()
+      .default('yes')
   },
-  (t) => [uniqueIndex('containers_number').on(t.lotId, t.number), check('containers_number_positive', sql`${t.number} > 0`)]
+  (t) => [
+    uniqueIndex('containers_number').on(t.lotId, t.number),
+    check('containers_number_positive', sql`${t.number} > 0`)
+  ]
 );
 
 /** Certificates of analysis, photographs and other papers. Append-only. */
@@ -102,7 +114,9 @@ export const lotPapers = pgTable('lot_papers', {
     .notNull()
     .references(() => users.id, { onDelete: 'restrict' }),
   addedByName: text().notNull(),
-  addedAt: instant().notNull().default(sql`clock_timestamp()`)
+  addedAt: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`)
 });
 
 /** Ethylene and diethylene glycol limit-test result of a high-risk lot. Append-only. */
@@ -117,5 +131,7 @@ export const limitTests = pgTable('limit_tests', {
     .notNull()
     .references(() => users.id, { onDelete: 'restrict' }),
   recordedByName: text().notNull(),
-  recordedAt: instant().notNull().default(sql`clock_timestamp()`)
+  recordedAt: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`)
 });

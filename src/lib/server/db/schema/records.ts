@@ -19,11 +19,16 @@ export const dispositions = pgTable(
     outcome: text({ enum: DISPOSITION_OUTCOMES }).notNull(),
     reason: text().notNull(),
     /** Containers rejected by name where only part of the lot is. */
-    rejectedContainerIds: uuid().array().notNull().default(sql`'{}'`),
+    rejectedContainerIds: uuid()
+      .array()
+      .notNull()
+      .default(sql`'{}'`),
     signatureId: uuid()
       .notNull()
       .references(() => signatures.id, { onDelete: 'restrict' }),
-    decidedAt: instant().notNull().default(sql`clock_timestamp()`)
+    decidedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [index('dispositions_lot').on(t.lotId)]
 );
@@ -47,7 +52,9 @@ export const certificates = pgTable(
     /** The tree head printed on it. */
     treeSize: integer().notNull(),
     treeRoot: text().notNull(),
-    issuedAt: instant().notNull().default(sql`clock_timestamp()`)
+    issuedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [check('certificates_hash_true', sql`${t.sha256} = encode(sha256(${t.pdf}), 'hex')`)]
 );
@@ -72,13 +79,18 @@ export const deviations = pgTable(
     action: text(),
     openedBy: uuid().references(() => users.id, { onDelete: 'restrict' }),
     openedByName: text().notNull(),
-    openedAt: instant().notNull().default(sql`clock_timestamp()`),
+    openedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     closedAt: instant(),
     conclusionSignatureId: uuid().references(() => signatures.id, { onDelete: 'restrict' })
   },
   (t) => [
     index('deviations_lot').on(t.lotId),
-    check('deviations_closed_signed', sql`(${t.phase} = 'closed') = (${t.closedAt} is not null and ${t.conclusionSignatureId} is not null)`),
+    check(
+      'deviations_closed_signed',
+      sql`(${t.phase} = 'closed') = (${t.closedAt} is not null and ${t.conclusionSignatureId} is not null)`
+    ),
     check(
       'deviations_closed_reasoned',
       sql`${t.phase} <> 'closed' or (${t.causeCategory} is not null and length(${t.cause}) > 0 and length(${t.impact}) > 0 and length(${t.action}) > 0)`
@@ -96,7 +108,9 @@ export const deviationNotes = pgTable('deviation_notes', {
   evidence: jsonb().$type<{ type: string; id: string; label: string }[]>().notNull().default([]),
   byUserId: uuid().references(() => users.id, { onDelete: 'restrict' }),
   byName: text().notNull(),
-  at: instant().notNull().default(sql`clock_timestamp()`)
+  at: instant()
+    .notNull()
+    .default(sql`clock_timestamp()`)
 });
 
 /** Last used number per series and year (lots, deliveries, deviations, certificates …). */

@@ -1,5 +1,16 @@
 import { sql } from 'drizzle-orm';
-import { boolean, check, doublePrecision, index, integer, jsonb, pgTable, text, uniqueIndex, uuid } from 'drizzle-orm/pg-core';
+import {
+  boolean,
+  check,
+  doublePrecision,
+  index,
+  integer,
+  jsonb,
+  pgTable,
+  text,
+  uniqueIndex,
+  uuid
+} from 'drizzle-orm/pg-core';
 import { bytea, idKey, instant } from './columns';
 import { instruments, performanceChecks } from './instruments';
 import { libraries, methodVersions } from './methods';
@@ -43,7 +54,9 @@ export const scans = pgTable(
     /** When the client says the file was chosen: a claim beside the record time. */
     clientTime: instant(),
     sentLate: boolean().notNull().default(false),
-    recordedAt: instant().notNull().default(sql`clock_timestamp()`)
+    recordedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [
     uniqueIndex('scans_attempt').on(t.containerId, t.attempt),
@@ -84,7 +97,9 @@ export const decisions = pgTable(
     /** Canonical JSON (RFC 8785) of identity/decision.ts Decision, and its SHA-256. */
     result: bytea().notNull(),
     resultSha256: text().notNull(),
-    decidedAt: instant().notNull().default(sql`clock_timestamp()`)
+    decidedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [
     index('decisions_verdict').on(t.verdict),
@@ -110,7 +125,9 @@ export const repeatRequests = pgTable(
       .notNull()
       .references(() => users.id, { onDelete: 'restrict' }),
     requestedByName: text().notNull(),
-    requestedAt: instant().notNull().default(sql`clock_timestamp()`),
+    requestedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
     outcome: text({ enum: ['granted', 'declined'] }),
     decidedBy: uuid().references(() => users.id, { onDelete: 'restrict' }),
     decidedByName: text(),
@@ -121,7 +138,9 @@ export const repeatRequests = pgTable(
     usedByScanId: uuid()
   },
   (t) => [
-    uniqueIndex('repeat_requests_one_open').on(t.containerId).where(sql`${t.outcome} is null`),
+    uniqueIndex('repeat_requests_one_open')
+      .on(t.containerId)
+      .where(sql`${t.outcome} is null`),
     check('repeat_requests_not_own', sql`${t.decidedBy} is null or ${t.decidedBy} <> ${t.requestedBy}`),
     check('repeat_requests_whole', sql`(${t.outcome} is null) = (${t.decidedBy} is null)`)
   ]

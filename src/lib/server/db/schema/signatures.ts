@@ -21,7 +21,9 @@ export const signatures = pgTable(
     /** Canonical JSON (RFC 8785) of what was signed. */
     record: bytea().notNull(),
     recordSha256: text().notNull(),
-    signedAt: instant().notNull().default(sql`clock_timestamp()`)
+    signedAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`)
   },
   (t) => [
     index('signatures_record').on(t.recordType, t.recordId),

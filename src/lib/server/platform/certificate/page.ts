@@ -53,9 +53,18 @@ export function openDocument(data: CertificateData): Page {
 
 /** Writes text at a place and returns its height; characters the house fonts lack come from the fallback font. */
 export function write(page: Page, text: string, x: number, y: number, options: TextOptions = {}): number {
-  const { font = FONT.text, size = 9, color = INK, width = BOX.left + BOX.width - x, align = 'left' } = options;
+  const {
+    font = FONT.text,
+    size = 9,
+    color = INK,
+    width = BOX.left + BOX.width - x,
+    align = 'left'
+  } = options;
   const { doc } = page;
-  doc.font(inHouseFont(text) ? font : FONT.fallback).fontSize(size).fillColor(color);
+  doc
+    .font(inHouseFont(text) ? font : FONT.fallback)
+    .fontSize(size)
+    .fillColor(color);
   const height = doc.heightOfString(text || ' ', { width, align });
   if (text !== '') doc.text(text, x, y, { width, align, lineGap: 0 });
   return height;
@@ -82,7 +91,12 @@ export function heading(page: Page, title: string, needed = 60): void {
   page.y += 10;
   const height = write(page, title, BOX.left, page.y, { font: FONT.bold, size: 11 });
   page.y += height + 2;
-  page.doc.moveTo(BOX.left, page.y).lineTo(BOX.left + BOX.width, page.y).lineWidth(0.8).strokeColor(INK).stroke();
+  page.doc
+    .moveTo(BOX.left, page.y)
+    .lineTo(BOX.left + BOX.width, page.y)
+    .lineWidth(0.8)
+    .strokeColor(INK)
+    .stroke();
   page.y += 5;
 }
 

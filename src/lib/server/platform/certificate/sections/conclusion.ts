@@ -8,7 +8,8 @@ import { BOX, ensureRoom, heading, heightOf, INK, write, type Page } from '../pa
 export function conclusionSection(page: Page, data: CertificateData): void {
   heading(page, 'Deviations');
   if (data.deviations.length === 0) paragraph(page, 'None was opened for this lot.');
-  for (const deviation of data.deviations) paragraph(page, `${deviation.number}: ${deviation.title}. ${deviation.conclusion}`);
+  for (const deviation of data.deviations)
+    paragraph(page, `${deviation.number}: ${deviation.title}. ${deviation.conclusion}`);
   heading(page, 'Conclusion');
   const sentence =
     data.disposition.outcome === 'release'
@@ -31,9 +32,20 @@ function signatureBlock(page: Page, data: CertificateData): void {
   page.doc.rect(BOX.left, page.y, BOX.width, 66).lineWidth(1).strokeColor(INK).stroke();
   const x = BOX.left + 10;
   write(page, 'Electronically signed by', x, page.y + 8, { size: 8 });
-  write(page, `${signature.printedName}, ${signature.role}`, x, page.y + 19, { font: FONT.bold, size: 11, width: BOX.width - 20 });
-  write(page, `${recordTime(signature.signedAt, data.site.timeZone)}. Meaning: ${meaning}.`, x, page.y + 36, { size: 9, width: BOX.width - 20 });
-  write(page, `Signed record SHA-256 ${signature.recordSha256}`, x, page.y + 51, { font: FONT.mono, size: 7.5, width: BOX.width - 20 });
+  write(page, `${signature.printedName}, ${signature.role}`, x, page.y + 19, {
+    font: FONT.bold,
+    size: 11,
+    width: BOX.width - 20
+  });
+  write(page, `${recordTime(signature.signedAt, data.site.timeZone)}. Meaning: ${meaning}.`, x, page.y + 36, {
+    size: 9,
+    width: BOX.width - 20
+  });
+  write(page, `Signed record SHA-256 ${signature.recordSha256}`, x, page.y + 51, {
+    font: FONT.mono,
+    size: 7.5,
+    width: BOX.width - 20
+  });
   page.y += 74;
 }
 

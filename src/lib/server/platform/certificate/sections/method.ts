@@ -23,7 +23,12 @@ export function methodSection(page: Page, data: CertificateData): void {
   }
 }
 
-function paragraph(page: Page, text: string, font: (typeof FONT)[keyof typeof FONT] = FONT.text, size = 9): void {
+function paragraph(
+  page: Page,
+  text: string,
+  font: (typeof FONT)[keyof typeof FONT] = FONT.text,
+  size = 9
+): void {
   const height = heightOf(page, text, BOX.width, { font, size });
   ensureRoom(page, height + 3);
   write(page, text, BOX.left, page.y, { font, size, color: font === FONT.mono ? SOFT : undefined });

@@ -27,16 +27,25 @@ const COLUMNS: readonly Column[] = [
 export function resultsSection(page: Page, data: CertificateData): void {
   heading(page, 'Results', 80);
   const failed = data.attempts.filter((attempt) => attempt.verdict !== 'pass').length;
-  const summary = failed === 0 ? 'Every scan is listed; all passed.' : `Every scan is listed; ${failed} did not pass and ${failed === 1 ? 'is' : 'are'} shown with the reason.`;
+  const summary =
+    failed === 0
+      ? 'Every scan is listed; all passed.'
+      : `Every scan is listed; ${failed} did not pass and ${failed === 1 ? 'is' : 'are'} shown with the reason.`;
   page.y += write(page, summary, BOX.left, page.y) + 4;
   drawHead(page);
   for (const attempt of data.attempts) drawRow(page, data, attempt);
 }
 
 function drawHead(page: Page): void {
-  for (const column of COLUMNS) write(page, column.title, BOX.left + column.x, page.y, { size: 7.5, color: SOFT, width: column.width });
+  for (const column of COLUMNS)
+    write(page, column.title, BOX.left + column.x, page.y, { size: 7.5, color: SOFT, width: column.width });
   page.y += 11;
-  page.doc.moveTo(BOX.left, page.y).lineTo(BOX.left + BOX.width, page.y).lineWidth(0.6).strokeColor(LINE).stroke();
+  page.doc
+    .moveTo(BOX.left, page.y)
+    .lineTo(BOX.left + BOX.width, page.y)
+    .lineWidth(0.6)
+    .strokeColor(LINE)
+    .stroke();
   page.y += 3;
 }
 
@@ -59,12 +68,34 @@ function drawRow(page: Page, data: CertificateData, attempt: CertificateAttempt)
   write(page, String(attempt.containerNumber), at(0), page.y, { ...small, font: FONT.mono });
   write(page, String(attempt.attempt), at(1), page.y, { ...small, font: FONT.mono });
   verdictMark(page, attempt.verdict, at(2), page.y + 1, 8);
-  write(page, VERDICT_NAMES[attempt.verdict], at(2) + 12, page.y, { ...small, font: FONT.bold, width: COLUMNS[2].width - 12 });
-  write(page, pair(attempt.correlation, attempt.correlationLimit), at(3), page.y, { size: 7.5, font: FONT.mono, width: COLUMNS[3].width });
-  write(page, pair(attempt.hotellingT2, attempt.t2Limit), at(4), page.y, { size: 7.5, font: FONT.mono, width: COLUMNS[4].width });
-  write(page, pair(attempt.qResidual, attempt.qLimit), at(5), page.y, { size: 7.5, font: FONT.mono, width: COLUMNS[5].width });
+  write(page, VERDICT_NAMES[attempt.verdict], at(2) + 12, page.y, {
+    ...small,
+    font: FONT.bold,
+    width: COLUMNS[2].width - 12
+  });
+  write(page, pair(attempt.correlation, attempt.correlationLimit), at(3), page.y, {
+    size: 7.5,
+    font: FONT.mono,
+    width: COLUMNS[3].width
+  });
+  write(page, pair(attempt.hotellingT2, attempt.t2Limit), at(4), page.y, {
+    size: 7.5,
+    font: FONT.mono,
+    width: COLUMNS[4].width
+  });
+  write(page, pair(attempt.qResidual, attempt.qLimit), at(5), page.y, {
+    size: 7.5,
+    font: FONT.mono,
+    width: COLUMNS[5].width
+  });
   write(page, who, at(6), page.y, { size: 7, width: COLUMNS[6].width });
-  if (note !== '') write(page, note, at(2), page.y + Math.max(11, whoHeight) + 1, { size: 7.5, width: BOX.width - 90 });
+  if (note !== '')
+    write(page, note, at(2), page.y + Math.max(11, whoHeight) + 1, { size: 7.5, width: BOX.width - 90 });
   page.y += height;
-  page.doc.moveTo(BOX.left, page.y - 1.5).lineTo(BOX.left + BOX.width, page.y - 1.5).lineWidth(0.3).strokeColor(LINE).stroke();
+  page.doc
+    .moveTo(BOX.left, page.y - 1.5)
+    .lineTo(BOX.left + BOX.width, page.y - 1.5)
+    .lineWidth(0.3)
+    .strokeColor(LINE)
+    .stroke();
 }

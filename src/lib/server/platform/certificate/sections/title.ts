@@ -10,7 +10,11 @@ export function titleSection(page: Page, data: CertificateData): void {
   let y = top;
   y += write(page, 'Identity certificate', BOX.left, y, { font: FONT.bold, size: 20, width: textWidth });
   y += 2 + write(page, data.number, BOX.left, y, { font: FONT.mono, size: 11, width: textWidth });
-  y += write(page, `${data.site.name}, ${data.site.dock}`, BOX.left, y, { size: 9, color: SOFT, width: textWidth });
+  y += write(page, `${data.site.name}, ${data.site.dock}`, BOX.left, y, {
+    size: 9,
+    color: SOFT,
+    width: textWidth
+  });
   y += 6;
   const outcome = data.disposition.outcome === 'release' ? 'Lot released' : 'Lot rejected';
   y += write(page, outcome, BOX.left, y, { font: FONT.bold, size: 13, width: textWidth });
@@ -23,7 +27,12 @@ export function titleSection(page: Page, data: CertificateData): void {
     { size: 9, width: textWidth }
   );
   drawQr(page, data.verificationUrl, BOX.left + BOX.width - 86, top, 86);
-  write(page, groupedCode(data.verificationCode), BOX.left + BOX.width - 104, top + 90, { font: FONT.mono, size: 7.5, width: 104, align: 'right' });
+  write(page, groupedCode(data.verificationCode), BOX.left + BOX.width - 104, top + 90, {
+    font: FONT.mono,
+    size: 7.5,
+    width: 104,
+    align: 'right'
+  });
   page.y = Math.max(y, top + 104);
 }
 
@@ -35,7 +44,8 @@ function drawQr(page: Page, content: string, x: number, y: number, size: number)
   page.doc.fillColor(INK);
   for (let row = 0; row < modules.size; row++) {
     for (let column = 0; column < modules.size; column++) {
-      if (modules.get(row, column)) page.doc.rect(x + (column + quiet) * cell, y + (row + quiet) * cell, cell, cell);
+      if (modules.get(row, column))
+        page.doc.rect(x + (column + quiet) * cell, y + (row + quiet) * cell, cell, cell);
     }
   }
   page.doc.fill();
