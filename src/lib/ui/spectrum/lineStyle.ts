@@ -1,0 +1,43 @@
+import type { ChartLine } from './chartTypes';
+
+/** How a line is drawn: hue and dash both differ, so that neither alone must tell the lines apart. */
+export interface LineStyle {
+  readonly stroke: string;
+  readonly ink: string;
+  readonly dash: string | undefined;
+  readonly width: number;
+}
+
+const OTHER_DASHES = ['3 3', '10 3 2 3', '6 2', '2 5', '12 4'];
+
+/** The style of each line, in the lines' order. */
+export function lineStyles(lines: readonly ChartLine[]): LineStyle[] {
+  let others = 0;
+  return lines.map((line) => {
+    if (line.kind === 'scan')
+      return { stroke: 'var(--pitch)', ink: 'var(--pitch)', dash: line.dash, width: 1.9 };
+    if (line.kind === 'reference') {
+      return { stroke: 'var(--rope)', ink: 'var(--rope-text)', dash: line.dash ?? '8 3', width: 1.9 };
+    }
+    const dash = line.dash ?? OTHER_DASHES[others++ % OTHER_DASHES.length];
+    return { stroke: 'var(--logwood)', ink: 'var(--logwood)', dash, width: 1.5 };
+  });
+}
+
+/** A line's label with its offset, where it has one. */
+export const lineLabel = (line: ChartLine): string =>
+  line.offset
+    ? `${line.label} (offset ${line.offset > 0 ? '+' : '\u2212'}${Math.abs(line.offset)})`
+    : line.label;
+
+/** As many lines as are named beside the plot; of more, the scan, the references and the first others. */
+export const MOST_LABELS = 8;
+
+/** Indices of the lines that are named, in the lines' order. */
+export function namedLines(lines: readonly ChartLine[]): number[] {
+  const order = lines.map((_, index) => index);
+  if (lines.length <= MOST_LABELS) return order;
+  const first = order.filter((index) => lines[index].kind !== 'other').slice(0, MOST_LABELS - 1);
+  const rest = order.filter((index) => !first.includes(index)).slice(0, MOST_LABELS - 1 - first.length);
+  return [...first, ...rest].sort((a, b) => a - b);
+}
