@@ -10,7 +10,7 @@ import { explain, explainGate } from './explain';
 import { firstGates, signalGates } from './gates';
 import { measure, type Measurement } from './measure';
 import type { AxisCorrection, FittedMethod, Library } from './method';
-import { prepareMethod, prepareRivals, type PreparedMethod, type PreparedRivals } from './prepared';
+import { prepareMethod, prepareRivals, type PreparedMethod } from './prepared';
 import { correctAxis } from './variation';
 
 /** Everything a decision depends on; nothing else may move it. */
