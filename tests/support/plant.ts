@@ -35,7 +35,7 @@ export function spectrumFile(
   if (!material) throw new Error(`no material ${itemCode}`);
   const { jcamp = false, fileName = `${itemCode}-${scanSeed}.${jcamp ? 'jdx' : 'csv'}`, ...more } = options;
   const spectrum = synthesise(material.bands, RM1, {
-    lotSeed: `${itemCode} test lot`,
+    lotSeed: `${itemCode} lot in the bay`,
     scanSeed,
     fluorescence: material.fluorescence,
     liner: readLiner(),
@@ -195,7 +195,7 @@ export async function makeTestPlant(db: Database, { siteId, people }: Fixtures):
     addMaterial,
     addDemoMaterial: (itemCode) => {
       const name = readMaterials().find((row) => row.itemCode === itemCode)?.name;
-      const files = [1, 2, 3].flatMap((lot) =>
+      const files = [1, 2, 3, 4, 5, 6].flatMap((lot) =>
         [1, 2].map((scan) =>
           spectrumFile(itemCode, `reference ${lot} ${scan}`, {
             lotSeed: `${itemCode} reference lot ${lot}`,
