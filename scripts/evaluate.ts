@@ -1,62 +1,73 @@
 /**
- * How well the engine tells materials apart on spectra of your own:
- *
- *   npm run evaluate -- FOLDER [--flat] [--check polystyrene] [--same A,B] [--json FILE]
- *   npm run evaluate -- --train FOLDER --test FOLDER [--check polystyrene] [--json FILE]
- *
- * FOLDER holds material/source/file (.csv .txt .jdx .dx); a file directly under material/ is a source of its own. With
- * --flat each file directly under FOLDER is a material of its own. --check corrects the axis of each instrument (the
- * file name up to "_") by its own spectrum of a standard. --same says that folders hold one substance.
+ * How well identity holds on a folder of labelled spectra: builds each material's method as the product suggests it,
+ * leaving one source out at a time, and decides every spectrum left out under its own and every other material.
+ *   npm run evaluate -- FOLDER [--flat] [--check polystyrene] [--same A=B] [--json FILE]
+ *   npm run evaluate -- --train FOLDER --test FOLDER
  */
 import { writeFileSync } from 'node:fs';
-import { parseArgs } from 'node:util';
-import { axisChecks, correctionFor } from './evaluate/axisChecks';
+import { axisCorrections } from './evaluate/axisChecks';
 import { figuresOf } from './evaluate/figures';
-import { leaveSourceOut, trainAndTest } from './evaluate/leaveOut';
-import { merged, readFolder, type FolderContent } from './evaluate/readFolder';
-import { reportOf } from './evaluate/report';
+import { leaveOneSourceOut, trainAndTest } from './evaluate/folds';
+import { reportLines } from './evaluate/report';
+import { readSpectraFolder, type SpectraFolder } from './evaluate/spectraFolder';
+import { runTrials } from './evaluate/trials';
+import { helpText, readFlags } from './lib/flags.mjs';
+import { PlainStop } from './lib/plainStop.mjs';
 
-const USAGE =
-  'Name a folder: npm run evaluate -- FOLDER [--flat] [--check polystyrene] [--same A,B] [--json FILE], or --train FOLDER --test FOLDER.';
+const FLAGS = [
+  { name: 'flat', about: 'each file of the folder is a material named after it' },
+  {
+    name: 'check',
+    takes: 'STANDARD',
+    about: "correct each source's axis from its own spectrum of this standard"
+  },
+  { name: 'same', takes: 'A=B', about: 'two names of one substance: B counts as A' },
+  { name: 'train', takes: 'FOLDER', about: 'build methods from this folder (with --test)' },
+  { name: 'test', takes: 'FOLDER', about: 'decide the spectra of this folder' },
+  { name: 'json', takes: 'FILE', about: 'write figures and every trial to this file' },
+  { name: 'help', short: 'h', about: 'this text' }
+];
 
-function main(): number {
-  const { values, positionals } = parseArgs({
-    allowPositionals: true,
-    options: {
-      flat: { type: 'boolean', default: false },
-      check: { type: 'string' },
-      same: { type: 'string', multiple: true, default: [] },
-      json: { type: 'string' },
-      train: { type: 'string' },
-      test: { type: 'string' }
-    }
-  });
-  const groups = values.same.map((list) => list.split(','));
-  const load = (folder: string): FolderContent => {
-    const content = readFolder(folder, values.flat);
-    content.unread.forEach((line) => console.log(`not read: ${line}`));
-    return { ...content, spectra: merged(content.spectra, groups) };
-  };
-  const [folder] = positionals;
-  const pair = values.train !== undefined && values.test !== undefined;
-  if (!pair && folder === undefined) {
-    console.error(USAGE);
-    return 2;
-  }
-  const training = load(values.train ?? folder).spectra;
-  const testing = pair ? load(values.test as string).spectra : training;
-  const checks = values.check ? axisChecks([...training, ...(pair ? testing : [])], values.check) : [];
-  for (const { file, pass, correction } of checks)
+function main(words: readonly string[]): void {
+  const folder = words[0] !== undefined && !words[0].startsWith('-') ? words[0] : undefined;
+  const flags = readFlags(folder === undefined ? words : words.slice(1), FLAGS);
+  if (flags.help) {
     console.log(
-      `axis of ${file}: ${pass ? 'within' : 'outside'} the handheld tolerances, corrected by ${correction.shiftCm1.toFixed(2)} cm-1 and ${(1e6 * correction.scale).toFixed(0)} ppm`
+      helpText(
+        'npm run evaluate -- FOLDER',
+        'How well identity holds on a folder of labelled spectra.',
+        FLAGS
+      )
     );
-  const correct = (entry: (typeof training)[number]) => correctionFor(entry, checks);
-  const trials = pair ? trainAndTest(training, testing, correct) : leaveSourceOut(training, correct);
+    return;
+  }
+  const read = (from: string | true | undefined) => readNamed(from, flags.flat === true, flags.same);
+  const trained = read(flags.train ?? folder);
+  const tested = typeof flags.test === 'string' ? read(flags.test) : null;
+  const folds = tested ? trainAndTest(trained.files, tested.files) : leaveOneSourceOut(trained.files);
+  const all = [...trained.files, ...(tested?.files ?? [])];
+  const corrections = typeof flags.check === 'string' ? axisCorrections(all, flags.check) : undefined;
+  for (const reason of [...trained.unread, ...(tested?.unread ?? [])]) console.log(`passed over   ${reason}`);
+  const trials = runTrials(folds, { corrections });
   const figures = figuresOf(trials);
-  const materials = new Set(training.map((entry) => entry.material)).size;
-  console.log(reportOf(`${training.length} spectra of ${materials} materials`, figures));
-  if (values.json) writeFileSync(values.json, `${JSON.stringify(figures, null, 2)}\n`);
-  return 0;
+  for (const line of reportLines(figures)) console.log(line);
+  if (typeof flags.json === 'string')
+    writeFileSync(flags.json, `${JSON.stringify({ figures, trials }, null, 2)}\n`);
 }
 
-process.exitCode = main();
+function readNamed(folder: string | true | undefined, flat: boolean, same?: string | true): SpectraFolder {
+  if (typeof folder !== 'string') throw new PlainStop('Name the folder: npm run evaluate -- FOLDER', 2);
+  const read = readSpectraFolder(folder, flat);
+  if (typeof same !== 'string') return read;
+  const [kept, merged] = same.split('=');
+  const files = read.files.map((file) => (file.material === merged ? { ...file, material: kept } : file));
+  return { ...read, files };
+}
+
+try {
+  main(process.argv.slice(2));
+} catch (error) {
+  if (!(error instanceof PlainStop)) throw error;
+  console.error(error.message);
+  process.exitCode = 2;
+}

@@ -1,42 +1,32 @@
-import { findStandard, SUGGESTED_TOLERANCES } from '../../src/lib/domain/wavenumberStandards';
+import { readFileSync } from 'node:fs';
 import type { AxisCorrection } from '../../src/lib/identity/method';
-import { checkWavenumbers } from '../../src/lib/spectra/axis/wavenumberCheck';
-import type { Labelled } from './readFolder';
+import { checkWavenumbers, type WavenumberStandard } from '../../src/lib/spectra/axis/wavenumberCheck';
+import { signalToNoise } from '../../src/lib/spectra/peaks/noise';
+import type { LabelledFile } from './spectraFolder';
 
-export interface InstrumentCheck {
-  readonly instrument: string;
-  readonly file: string;
-  /** Within the handheld tolerances as measured. */
-  readonly pass: boolean;
-  readonly correction: AxisCorrection;
-}
+const STANDARDS = new URL('../../reference/calibration/standards.json', import.meta.url);
 
 /**
- * Axis correction of every spectrum by its own instrument's spectrum of a standard. Where an instrument has several
- * (optics, powers), the one whose file name is the same counts, else its first.
+ * The axis correction of each source (instrument) from its own spectrum of a shift standard; where it measured the
+ * standard several times, from the one with the best signal.
+ * @param standard name of a standard in reference/calibration and of a material among the files
  */
-export function axisChecks(spectra: readonly Labelled[], standardName: string): InstrumentCheck[] {
-  const standard = findStandard(standardName);
-  if (!standard) throw new Error(`There is no standard named ${standardName}.`);
-  const tolerances =
-    SUGGESTED_TOLERANCES.find((set) => set.standard === standardName && set.name === 'handheld')?.bands ?? [];
-  return spectra
-    .filter((entry) => entry.material === standardName)
-    .map((entry) => {
-      const check = checkWavenumbers(entry.spectrum, standard, tolerances);
-      const { shiftCm1, scale } = check.correction;
-      return {
-        instrument: entry.instrument,
-        file: fileName(entry),
-        pass: check.pass,
-        correction: { shiftCm1, scale }
-      };
-    });
+export function axisCorrections(
+  files: readonly LabelledFile[],
+  standard: string
+): ReadonlyMap<string, AxisCorrection> {
+  const known = (JSON.parse(readFileSync(STANDARDS, 'utf8')) as WavenumberStandard[]).find(
+    (entry) => entry.name === standard
+  );
+  if (!known) throw new Error(`${standard} is not among the standards of reference/calibration.`);
+  const best = new Map<string, LabelledFile>();
+  for (const file of files.filter((each) => each.material === standard)) {
+    const other = best.get(file.source);
+    if (!other || ratio(file) > ratio(other)) best.set(file.source, file);
+  }
+  return new Map(
+    [...best].map(([source, file]) => [source, checkWavenumbers(file.spectrum, known, []).correction])
+  );
 }
 
-export function correctionFor(entry: Labelled, checks: readonly InstrumentCheck[]): AxisCorrection | null {
-  const own = checks.filter((check) => check.instrument === entry.instrument);
-  return (own.find((check) => check.file === fileName(entry)) ?? own[0])?.correction ?? null;
-}
-
-const fileName = ({ path }: Labelled): string => path.split('/').pop() ?? path;
+const ratio = (file: LabelledFile): number => signalToNoise(file.spectrum.intensity).ratio;

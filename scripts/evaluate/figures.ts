@@ -1,98 +1,133 @@
-import { clopperPearson } from '../../src/lib/spectra/statistics/clopperPearson';
-import type { Trial } from './leaveOut';
+import { clopperPearson, type ExactInterval } from '../../src/lib/spectra/statistics/clopperPearson';
+import type { Trial } from './trials';
 
+/** A count out of a total with its exact 95 % interval. */
 export interface Rate {
   readonly count: number;
   readonly of: number;
-  readonly rate: number | null;
-  /** Exact two-sided 95 % bounds (Clopper & Pearson). */
-  readonly low: number | null;
-  readonly high: number | null;
+  readonly rate: number;
+  readonly interval: ExactInterval;
 }
 
 export interface Figures {
-  /** Genuine spectra that passed. */
-  readonly sensitivity: Rate;
-  /** Genuine spectra refused as another material: an inconclusive or invalid measurement is no refusal. */
-  readonly falseRejects: Rate;
-  readonly genuineInconclusive: Rate;
-  readonly genuineInvalid: Rate;
-  /** Spectra of another material that did not pass. */
-  readonly specificity: Rate;
-  readonly falseAccepts: readonly string[];
-  /** Spectra whose own material correlates best of all. */
-  readonly bestMatch: Rate;
-  /** Where as many genuine spectra lie below a correlation threshold as strangers reach it. */
-  readonly equalErrorRate: number | null;
-  readonly confused: readonly { readonly pair: string; readonly count: number }[];
-  readonly refusedBy: Readonly<Record<string, number>>;
-  readonly medianMs: number;
+  readonly spectra: number;
+  readonly materials: number;
+  /** Spectra a quality gate turned away under their own material, by gate. */
+  readonly noResult: Readonly<Record<string, number>>;
+  /** Genuine material passed, of all genuine trials and of those with a result. */
+  readonly passedOwn: Rate | null;
+  readonly passedOwnOfJudged: Rate | null;
+  /** Genuine material failed outright ("cannot tell" and "no result" are not failures). */
+  readonly failedOwn: Rate | null;
+  /** Other material not passed. */
+  readonly refusedOther: Rate | null;
+  /** Own material has the highest correlation, of judged spectra and of all (no result counts against). */
+  readonly bestMatch: Rate | null;
+  readonly bestMatchOfAll: Rate | null;
+  /** Equal error rate by lead over the best other material, and by correlation alone. */
+  readonly equalErrorByLead: number | null;
+  readonly equalErrorByCorrelation: number | null;
+  readonly falseAccepts: readonly Trial[];
+  readonly ownNotPassed: readonly Trial[];
+  readonly confused: readonly {
+    readonly material: string;
+    readonly takenFor: string;
+    readonly count: number;
+  }[];
+  readonly medianMilliseconds: number;
 }
 
-export function rate(count: number, of: number): Rate {
-  if (of === 0) return { count, of, rate: null, low: null, high: null };
-  return { count, of, rate: count / of, ...clopperPearson(count, of, 0.95) };
-}
+const CONFIDENCE = 0.95;
 
+/** Sums trials up. */
 export function figuresOf(trials: readonly Trial[]): Figures {
-  const genuine = trials.filter((trial) => trial.truth === trial.claimed);
-  const strange = trials.filter((trial) => trial.truth !== trial.claimed);
-  const having = (verdict: string) => genuine.filter((trial) => trial.decision.verdict === verdict).length;
-  const accepted = strange.filter((trial) => trial.decision.verdict === 'pass');
-  const refusedBy: Record<string, number> = {};
-  for (const { decision } of genuine) {
-    if (decision.verdict === 'pass') continue;
-    const why = `${decision.verdict}: ${decision.explanation.decidedBy ?? ''}`;
-    refusedBy[why] = (refusedBy[why] ?? 0) + 1;
-  }
-  const times = trials.map((trial) => trial.tookMs).sort((a, b) => a - b);
+  const own = trials.filter((trial) => trial.material === trial.claimed);
+  const other = trials.filter((trial) => trial.material !== trial.claimed);
+  const judged = own.filter((trial) => trial.correlation !== null);
+  const best = bestMatches(trials);
+  const right = best.filter((entry) => entry.bestMatch === entry.material);
+  const times = trials.map((trial) => trial.milliseconds).sort((a, b) => a - b);
   return {
-    sensitivity: rate(having('pass'), genuine.length),
-    falseRejects: rate(having('fail'), genuine.length),
-    genuineInconclusive: rate(having('inconclusive'), genuine.length),
-    genuineInvalid: rate(having('invalid'), genuine.length),
-    specificity: rate(strange.length - accepted.length, strange.length),
-    falseAccepts: accepted.map((trial) => `${trial.path} as ${trial.claimed}`),
-    ...bestMatches(trials),
-    equalErrorRate: equalErrorRate(genuine.map(scoreOf), strange.map(scoreOf)),
-    refusedBy,
-    medianMs: times[times.length >> 1] ?? 0
+    spectra: new Set(trials.map((trial) => trial.file)).size,
+    materials: new Set(trials.map((trial) => trial.claimed)).size,
+    noResult: tally(
+      own.filter((trial) => trial.verdict === 'invalid').map((trial) => String(trial.decidedBy))
+    ),
+    passedOwn: rate(count(own, 'pass'), own.length),
+    passedOwnOfJudged: rate(count(judged, 'pass'), judged.length),
+    failedOwn: rate(count(own, 'fail'), own.length),
+    refusedOther: rate(other.length - count(other, 'pass'), other.length),
+    bestMatch: rate(right.length, best.length),
+    bestMatchOfAll: rate(right.length, own.length),
+    equalErrorByLead: equalError(trials, (trial) => trial.lead),
+    equalErrorByCorrelation: equalError(trials, (trial) => trial.correlation),
+    falseAccepts: other.filter((trial) => trial.verdict === 'pass'),
+    ownNotPassed: own.filter((trial) => trial.verdict !== 'pass'),
+    confused: confusions(best),
+    medianMilliseconds: times.length === 0 ? NaN : times[times.length >> 1]
   };
 }
 
-const scoreOf = (trial: Trial): number => trial.correlation ?? -1;
+const count = (trials: readonly Trial[], verdict: Trial['verdict']): number =>
+  trials.filter((trial) => trial.verdict === verdict).length;
 
-function bestMatches(trials: readonly Trial[]): Pick<Figures, 'bestMatch' | 'confused'> {
-  const byPath = new Map<string, Trial[]>();
-  for (const trial of trials) byPath.set(trial.path, [...(byPath.get(trial.path) ?? []), trial]);
-  const confused = new Map<string, number>();
-  let right = 0;
-  let all = 0;
-  for (const own of byPath.values()) {
-    if (!own.some((trial) => trial.truth === trial.claimed)) continue;
-    all++;
-    const best = own.reduce((a, b) => (scoreOf(b) > scoreOf(a) ? b : a));
-    if (best.claimed === best.truth) right++;
-    else {
-      const pair = `${best.truth} taken for ${best.claimed}`;
-      confused.set(pair, (confused.get(pair) ?? 0) + 1);
-    }
-  }
-  return {
-    bestMatch: rate(right, all),
-    confused: [...confused].map(([pair, count]) => ({ pair, count })).sort((a, b) => b.count - a.count)
-  };
+const rate = (hits: number, of: number): Rate | null =>
+  of === 0 ? null : { count: hits, of, rate: hits / of, interval: clopperPearson(hits, of, CONFIDENCE) };
+
+interface BestMatch {
+  readonly material: string;
+  readonly bestMatch: string;
 }
 
-/** Mean of both error rates at the threshold where they differ least. */
-export function equalErrorRate(genuine: readonly number[], strange: readonly number[]): number | null {
-  if (genuine.length === 0 || strange.length === 0) return null;
-  let best = { gap: Infinity, error: 1 };
-  for (const threshold of new Set([...genuine, ...strange])) {
-    const rejects = genuine.filter((value) => value < threshold).length / genuine.length;
-    const accepts = strange.filter((value) => value >= threshold).length / strange.length;
-    const gap = Math.abs(rejects - accepts);
-    if (gap < best.gap) best = { gap, error: (rejects + accepts) / 2 };
+/** The material of highest correlation for each spectrum that was judged under its own material. */
+function bestMatches(trials: readonly Trial[]): BestMatch[] {
+  const byFile = new Map<string, Trial[]>();
+  for (const trial of trials) byFile.set(trial.file, [...(byFile.get(trial.file) ?? []), trial]);
+  return [...byFile.values()].flatMap((group) => {
+    const scored = group.filter((trial) => trial.correlation !== null);
+    if (!scored.some((trial) => trial.material === trial.claimed)) return [];
+    const best = scored.reduce((a, b) => (Number(b.correlation) > Number(a.correlation) ? b : a));
+    return [{ material: best.material, bestMatch: best.claimed }];
+  });
+}
+
+function confusions(best: readonly BestMatch[]): Figures['confused'] {
+  const wrong = best.filter((entry) => entry.bestMatch !== entry.material);
+  const counts = tally(wrong.map((entry) => `${entry.material}\t${entry.bestMatch}`));
+  return Object.entries(counts)
+    .map(([pair, times]) => {
+      const [material, takenFor] = pair.split('\t');
+      return { material, takenFor, count: times };
+    })
+    .sort((a, b) => b.count - a.count);
+}
+
+function tally(words: readonly string[]): Record<string, number> {
+  const counts: Record<string, number> = {};
+  for (const word of words) counts[word] = (counts[word] ?? 0) + 1;
+  return counts;
+}
+
+/** The rate at which a threshold on the score turns away as much genuine as it lets through foreign material. */
+export function equalError(
+  trials: readonly Trial[],
+  scoreOf: (trial: Trial) => number | null
+): number | null {
+  const scores = (genuine: boolean) =>
+    trials
+      .filter((trial) => (trial.material === trial.claimed) === genuine)
+      .map(scoreOf)
+      .filter((score) => score !== null)
+      .sort((a, b) => a - b);
+  const genuine = scores(true);
+  const foreign = scores(false);
+  if (genuine.length === 0 || foreign.length === 0) return null;
+  let closest = { apart: Infinity, error: NaN };
+  for (const threshold of [...genuine, ...foreign]) {
+    const rejected = genuine.filter((score) => score < threshold).length / genuine.length;
+    const accepted = foreign.filter((score) => score >= threshold).length / foreign.length;
+    const apart = Math.abs(rejected - accepted);
+    if (apart < closest.apart) closest = { apart, error: (rejected + accepted) / 2 };
   }
-  return best.error;
+  return closest.error;
 }

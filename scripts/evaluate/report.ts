@@ -1,29 +1,36 @@
 import type { Figures, Rate } from './figures';
 
-const percent = (value: number): string => `${(100 * value).toFixed(1)} %`;
-
-function line(name: string, { count, of, rate, low, high }: Rate): string {
-  if (rate === null || low === null || high === null) return `${name.padEnd(34)} not measured`;
-  return `${name.padEnd(34)} ${percent(rate).padStart(8)}   ${count} of ${of}   95 % bounds ${percent(low)} to ${percent(high)}`;
+/** Figures as lines of text; every rate with its count and exact 95 % interval. */
+export function reportLines(figures: Figures): string[] {
+  const lines = [
+    `${figures.spectra} spectra, ${figures.materials} materials`,
+    row('own material passed', figures.passedOwn),
+    row('  of those with a result', figures.passedOwnOfJudged),
+    row('own material failed', figures.failedOwn),
+    row('other material refused', figures.refusedOther),
+    row('own is best match', figures.bestMatch),
+    row('  counting no result against', figures.bestMatchOfAll),
+    `${'equal error rate'.padEnd(30)} ${percent(figures.equalErrorByLead)} by lead, ${percent(figures.equalErrorByCorrelation)} by correlation alone`,
+    `${'time per decision'.padEnd(30)} ${figures.medianMilliseconds.toFixed(2)} ms (median)`
+  ];
+  const gates = Object.entries(figures.noResult).map(([gate, count]) => `${gate} ${count}`);
+  if (gates.length > 0) lines.push(`${'no result'.padEnd(30)} ${gates.join(', ')}`);
+  for (const trial of figures.falseAccepts)
+    lines.push(`FALSE ACCEPT  ${trial.file} passed as ${trial.claimed} (r ${digits(trial.correlation)})`);
+  for (const trial of figures.ownNotPassed)
+    lines.push(
+      `not passed    ${trial.file}: ${trial.verdict}, ${trial.decidedBy} (r ${digits(trial.correlation)}, lead ${digits(trial.lead)})`
+    );
+  for (const { material, takenFor, count } of figures.confused)
+    lines.push(`best match    ${material} taken for ${takenFor}: ${count}`);
+  return lines;
 }
 
-/** The figures as a table for a terminal. */
-export function reportOf(title: string, figures: Figures): string {
-  const counts = (entries: readonly (readonly [string, number])[]) =>
-    entries.map(([name, count]) => `    ${count} x ${name}`);
-  const { equalErrorRate } = figures;
-  return [
-    title,
-    line('Sensitivity (genuine pass)', figures.sensitivity),
-    line('  genuine, failed', figures.falseRejects),
-    line('  genuine, inconclusive', figures.genuineInconclusive),
-    line('  genuine, no valid measurement', figures.genuineInvalid),
-    ...counts(Object.entries(figures.refusedBy).sort((a, b) => b[1] - a[1])),
-    line('Specificity (others do not pass)', figures.specificity),
-    ...figures.falseAccepts.map((text) => `    passed: ${text}`),
-    line('Best match by correlation', figures.bestMatch),
-    ...counts(figures.confused.map(({ pair, count }) => [pair, count] as const)),
-    `${'Equal error rate of correlation'.padEnd(34)} ${(equalErrorRate === null ? 'not measured' : percent(equalErrorRate)).padStart(8)}`,
-    `${'Time for a decision, median'.padEnd(34)} ${figures.medianMs.toFixed(2).padStart(8)} ms`
-  ].join('\n');
+function row(name: string, rate: Rate | null): string {
+  if (rate === null) return `${name.padEnd(30)} none tried`;
+  const { count, of, interval } = rate;
+  return `${name.padEnd(30)} ${percent(rate.rate)} (${count} of ${of}; 95 % interval ${percent(interval.low)} to ${percent(interval.high)})`;
 }
+
+const percent = (share: number | null): string => (share === null ? 'none' : `${(100 * share).toFixed(1)} %`);
+const digits = (value: number | null): string => (value === null ? 'none' : value.toFixed(3));
