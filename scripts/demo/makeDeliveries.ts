@@ -1,9 +1,10 @@
 import { randomUUID } from 'node:crypto';
 import { registerDelivery } from '../../src/lib/server/commands/deliveries';
-import { attachPaper, dispositionPreview, disposeLot } from '../../src/lib/server/commands/lots';
+import { attachPaper, disposeLot } from '../../src/lib/server/commands/lots';
 import { recordScan } from '../../src/lib/server/commands/scans';
 import type { Database } from '../../src/lib/server/db/client';
 import { serverNow, siteToday } from '../../src/lib/server/queries/clock';
+import { dispositionPreview } from '../../src/lib/server/queries/dispositionRecord';
 import { getLot } from '../../src/lib/server/queries/lots';
 import { textFile, type Plant } from './makePlant';
 import { readLiner, readMaterials } from './materials';

@@ -1,6 +1,5 @@
 import { randomBytes } from 'node:crypto';
 import { eq, inArray } from 'drizzle-orm';
-import { canonicalJson } from '../../identity/canonicalJson';
 import { verificationCode } from '../../domain/certificate';
 import { PAPER_KINDS, type DispositionOutcome } from '../../domain/lots';
 import { done, refuse, type Outcome } from '../../domain/refusals';
@@ -14,6 +13,8 @@ import { nextNumber } from '../platform/numberSeries';
 import { keepRawFile, type IncomingFile } from '../platform/rawFiles';
 import { proveIdentity, sign, type SignatureProof } from '../platform/signing';
 import { recordTrail } from '../platform/trail';
+import { MAX_PAPER_BYTES, paperType } from '../../domain/papers';
+import { dispositionPreview, dispositionRecord } from '../queries/dispositionRecord';
 import { getCertificateData } from '../queries/certificateData';
 import { getLot, getReleaseConditions, type LotDetail } from '../queries/lots';
 
@@ -27,54 +28,6 @@ export interface DispositionInput {
   readonly seenSha256: string;
   /** Public address of this installation, for the certificate's verification code. */
   readonly origin: string;
-}
-
-/** What is signed at a disposition: the lot with every attempt, as canonical JSON. */
-export function dispositionRecord(detail: LotDetail, outcome: string) {
-  return {
-    type: 'lot-disposition',
-    outcome,
-    lotNumber: detail.lot.lotNumber,
-    material: { itemCode: detail.material.itemCode, name: detail.material.name },
-    manufacturer: detail.manufacturer.name,
-    manufacturerBatch: detail.lot.manufacturerBatch,
-    supplier: detail.supplier.name,
-    delivery: detail.delivery.number,
-    expiresOn: detail.lot.expiresOn,
-    methodVersionId: detail.lot.methodVersionId,
-    containers: detail.containers.map((container) => ({
-      number: container.number,
-      barcode: container.barcode,
-      status: container.status,
-      scans: detail.scans
-        .filter((scan) => scan.containerId === container.id)
-        .map((scan) => ({
-          id: scan.id,
-          attempt: scan.attempt,
-          verdict: scan.verdict,
-          correlation: scan.correlation,
-          hotellingT2: scan.hotellingT2,
-          qResidual: scan.qResidual
-        }))
-    })),
-    papers: detail.papers.map((paper) => ({
-      kind: paper.kind,
-      fileName: paper.fileName,
-      sha256: paper.sha256
-    })),
-    deviations: detail.deviations.map((deviation) => ({ number: deviation.number, phase: deviation.phase })),
-    limitTest: detail.limitTests[0]?.outcome ?? null
-  };
-}
-
-/** SHA-256 and record of what a signer of this lot would sign now. */
-export async function dispositionPreview(
-  detail: LotDetail,
-  outcome: string
-): Promise<{ record: object; sha256: string }> {
-  const record = dispositionRecord(detail, outcome);
-  const digest = await crypto.subtle.digest('SHA-256', new TextEncoder().encode(canonicalJson(record)));
-  return { record, sha256: Buffer.from(digest).toString('hex') };
 }
 
 /**
@@ -186,16 +139,6 @@ async function writeDisposition(
   return { certificateId: certificate.id };
 }
 
-const PAPER_TYPES: Readonly<Record<string, (bytes: Uint8Array) => boolean>> = {
-  'application/pdf': (bytes) => startsWith(bytes, [0x25, 0x50, 0x44, 0x46, 0x2d]),
-  'image/png': (bytes) => startsWith(bytes, [0x89, 0x50, 0x4e, 0x47]),
-  'image/jpeg': (bytes) => startsWith(bytes, [0xff, 0xd8, 0xff])
-};
-const startsWith = (bytes: Uint8Array, head: number[]) => head.every((byte, index) => bytes[index] === byte);
-
-/** Largest paper, bytes. */
-export const MAX_PAPER_BYTES = 15 * 1024 * 1024;
-
 /** Attaches a paper (PDF or photograph, told by content and not by name) to a lot. */
 export async function attachPaper(
   db: Database,
@@ -214,7 +157,7 @@ export async function attachPaper(
     const sentence = 'The paper must be smaller than 15 MB';
     return refuse('too-large', `${sentence}. Nothing was stored.`, { file: sentence });
   }
-  const mediaType = Object.keys(PAPER_TYPES).find((type) => PAPER_TYPES[type](file.bytes));
+  const mediaType = paperType(file.bytes);
   if (!mediaType) {
     const sentence =
       'The paper must be a PDF, PNG or JPEG file; this one is something else, whatever its name says';

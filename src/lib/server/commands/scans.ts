@@ -1,5 +1,4 @@
 import { eq } from 'drizzle-orm';
-import { canonicalJson } from '../../identity/canonicalJson';
 import { decide } from '../../identity/decide';
 import type { Decision } from '../../identity/decision';
 import { readSpectrumFile } from '../../spectra/formats/formats';
@@ -8,11 +7,13 @@ import { done, refuse, type Outcome, type Refusal } from '../../domain/refusals'
 import { can } from '../../domain/roles';
 import { scanRefusal, statusAfter, VERDICT_NAMES, type NewScan } from '../../domain/scans';
 import type { Database, Transaction } from '../db/client';
-import { containers, decisions, instrumentLog, lots, repeatRequests, scans, sites } from '../db/schema';
+import { containers, instrumentLog, lots, repeatRequests, scans, sites } from '../db/schema';
 import { transact } from '../db/transaction';
 import type { Act } from '../platform/act';
 import { openDeviation } from '../platform/deviations';
 import { keepRawFile, sha256Hex, type IncomingFile } from '../platform/rawFiles';
+import { refuseFile } from '../platform/refusedFile';
+import { storeDecision } from '../platform/storeDecision';
 import { recordTrail } from '../platform/trail';
 import { listContainers, lockContainerByBarcode } from '../queries/containers';
 import { getInstrument, type InstrumentStanding } from '../queries/instruments';
@@ -50,9 +51,10 @@ export async function recordScan(
   if (!read.ok) return refuseFile(db, act, barcode, file, read.problem);
 
   return transact(db, async (tx) => {
+    // The lock first: the same scan sent twice at once then finds the one that came before it.
+    const locked = await lockContainerByBarcode(tx, barcode);
     const earlier = await sameScanBefore(tx, act, input.scanId, barcode, file);
     if (earlier) return earlier;
-    const locked = await lockContainerByBarcode(tx, barcode);
     const refusal = await whyNotNow(tx, act, input, locked);
     if (refusal) return refusal;
     const target = locked as Locked;
@@ -71,35 +73,6 @@ export async function recordScan(
       );
     return done(await writeScan(tx, act, input, file, target, standing, method));
   });
-}
-
-/** A file that is no spectrum is no measurement: it is kept with the reason, and no attempt is counted. */
-async function refuseFile(
-  db: Database,
-  act: Act,
-  barcode: string,
-  file: IncomingFile,
-  problem: { code: string; message: string; line?: number }
-): Promise<Refusal> {
-  const detail = problem.line === undefined ? problem.message : `Line ${problem.line}: ${problem.message}`;
-  await transact(db, async (tx) => {
-    const kept = problem.code === 'too-large' ? null : await keepRawFile(tx, file);
-    await recordTrail(tx, act, {
-      action: 'scan.file-refused',
-      recordType: 'container',
-      recordId: barcode,
-      recordLabel: `Container ${barcode}`,
-      after: {
-        fileName: file.fileName.slice(0, 255),
-        size: file.bytes.byteLength,
-        sha256: kept?.sha256 ?? null,
-        problem: problem.code,
-        detail
-      }
-    });
-  });
-  const code = problem.code === 'too-large' ? 'too-large' : 'bad-file';
-  return refuse(code, detail, { file: detail });
 }
 
 /** The answer already given for this scan id, or a refusal when the id came with other content. */
@@ -226,7 +199,7 @@ async function writeScan(
     clientTime: input.clientTime === undefined ? null : new Date(input.clientTime),
     sentLate: input.sentLate
   });
-  const decisionHash = await writeDecision(tx, input.scanId, decision, current.id, checkState, correction);
+  const decisionHash = await storeDecision(tx, input.scanId, decision, current.id, checkState, correction);
   if (grant)
     await tx
       .update(repeatRequests)
@@ -274,39 +247,6 @@ async function writeScan(
 function readAcquisition(file: IncomingFile, input: NewScan) {
   const read = readSpectrumFile(file.bytes, input.readOptions);
   return read.ok ? read.acquisition : {};
-}
-
-async function writeDecision(
-  tx: Transaction,
-  scanId: string,
-  decision: Decision,
-  libraryId: string,
-  checkState: 'valid' | 'missing' | 'expired',
-  correction: { shiftCm1: number; scale: number } | null
-): Promise<string> {
-  const result = new TextEncoder().encode(canonicalJson(decision));
-  const resultSha256 = sha256Hex(result);
-  const scores = decision.scores;
-  await tx.insert(decisions).values({
-    scanId,
-    verdict: decision.verdict,
-    nearLimit: decision.nearLimit,
-    engineVersion: decision.engineVersion,
-    libraryId,
-    checkState,
-    axisShiftCm1: correction?.shiftCm1 ?? null,
-    axisScale: correction?.scale ?? null,
-    correlation: scores?.correlation ?? null,
-    hotellingT2: scores?.hotellingT2 ?? null,
-    t2Limit: scores?.t2Limit ?? null,
-    qResidual: scores?.qResidual ?? null,
-    qLimit: scores?.qLimit ?? null,
-    bestRivalCorrelation: scores?.bestRivalCorrelation ?? null,
-    signalToNoise: scores?.signalToNoise ?? null,
-    result,
-    resultSha256
-  });
-  return resultSha256;
 }
 
 /** What a verdict does to the container and its lot: lock, deviation, review. */

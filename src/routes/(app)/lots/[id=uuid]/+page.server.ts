@@ -1,15 +1,10 @@
 import { refuse } from '$lib/domain/refusals';
 import { can } from '$lib/domain/roles';
-import {
-  attachPaper,
-  dispositionPreview,
-  disposeLot,
-  recordLimitTest,
-  setContainersAside
-} from '$lib/server/commands/lots';
+import { attachPaper, disposeLot, recordLimitTest, setContainersAside } from '$lib/server/commands/lots';
 import { decideRepeat } from '$lib/server/commands/repeats';
 import { database } from '$lib/server/db/client';
 import { fileOf, formFailure, notFound, requireAct, text } from '$lib/server/platform/respond';
+import { dispositionPreview } from '$lib/server/queries/dispositionRecord';
 import { getLot, getReleaseConditions } from '$lib/server/queries/lots';
 import { listRepeatRequests } from '$lib/server/queries/scans';
 import { listLotHistory } from '$lib/server/queries/trail';
