@@ -1,4 +1,4 @@
-import { correlation } from '../spectra/compare/correlation';
+import { nonconformity } from '../spectra/model/conformal';
 import { fitClassModel } from '../spectra/model/fitClassModel';
 import { findBands } from '../spectra/peaks/find';
 import { meanSpectrum, stepReferences } from '../spectra/preprocess/stepReferences';
@@ -8,6 +8,8 @@ import { StepRefusal } from '../spectra/preprocess/step';
 import type { Spectrum } from '../spectra/spectrum';
 import { ENGINE_VERSION } from './engineVersion';
 import type { FittedMethod, LabelledReference, MethodDefinition } from './method';
+import { withLeastQ } from './leastQ';
+import { energyOf, noiseAfterRecipe } from './noiseAfterRecipe';
 import { correctAxis, instrumentVariants } from './variation';
 
 export type FitOutcome =
@@ -68,14 +70,17 @@ function fit(definition: MethodDefinition, references: readonly LabelledReferenc
       sources.push(references[i].source);
     }
   });
-  const { model, heldOutNonconformity, cautions } = fitClassModel(rows, {
+  const sourceCount = new Set(sources).size;
+  const fitted = fitClassModel(rows, {
     components: criteria.components,
     significance: criteria.significance,
     sources
   });
+  const model = withLeastQ(fitted.model, sourceCount);
+  const { t2, q } = fitted.heldOut;
+  const heldOutNonconformity = Array.from(t2, (value, i) => nonconformity(value, q[i], model.limits));
   const grid = applySteps(corrected[0], recipe, means).shiftCm1;
   const display = displayOf(corrected, definition);
-  const sourceCount = new Set(references.map((reference) => reference.source)).size;
   return {
     schema: 1,
     engineVersion: ENGINE_VERSION,
@@ -86,12 +91,29 @@ function fit(definition: MethodDefinition, references: readonly LabelledReferenc
       intensity: Array.from(intensity)
     })),
     model,
-    heldOutNonconformity,
+    noiseEnergy: meanNoise(corrected, recipe, means),
+    heldOutNonconformity: heldOutNonconformity.sort((a, b) => a - b),
     ...display,
     referenceCount: references.length,
     sourceCount,
-    cautions: [...fewReferences(references.length, sourceCount), ...cautions]
+    cautions: [...fewReferences(references.length, sourceCount), ...fitted.cautions]
   };
+}
+
+function meanNoise(
+  spectra: readonly Spectrum[],
+  recipe: MethodDefinition['recipe'],
+  means: readonly Spectrum[]
+): number {
+  const range = recipe.find((step) => step.name === 'resample')?.options as {
+    fromCm1: number;
+    toCm1: number;
+  };
+  const treatment = { recipe, stepReferences: means, range };
+  const energies = spectra.map((spectrum) =>
+    energyOf(noiseAfterRecipe(spectrum, applySteps(spectrum, recipe, means).intensity, treatment))
+  );
+  return energies.reduce((sum, value) => sum + value, 0) / energies.length;
 }
 
 /** A shifted variant still covers what its original covers: the end points are stretched to the original's ends. */
@@ -145,26 +167,4 @@ function unitHeight(spectrum: Spectrum): Spectrum {
   const top = spectrum.intensity.reduce((most, value) => Math.max(most, value), 0);
   if (!(top > 0)) throw new StepRefusal('zero-variance', 'A reference has no band above its baseline.');
   return { shiftCm1: spectrum.shiftCm1, intensity: spectrum.intensity.map((value) => value / top) };
-}
-
-/**
- * Criteria that suit these references: the correlation limit lies below the worst agreement among them by three
- * times their usual disagreement, within 0.80 and 0.98.
- */
-export function suggestMinCorrelation(
-  definition: MethodDefinition,
-  references: readonly LabelledReference[]
-): number {
-  const rows = references.map((reference) => applySteps(reference.spectrum, definition.recipe).intensity);
-  if (rows.length < 2) return 0.9;
-  const agreements = rows.map((row, i) => {
-    const others = new Float64Array(row.length);
-    rows.forEach((other, k) => {
-      if (k !== i) for (let j = 0; j < others.length; j++) others[j] += other[j];
-    });
-    return correlation(row, others);
-  });
-  const worst = Math.min(...agreements);
-  const usual = agreements.reduce((sum, value) => sum + value, 0) / agreements.length;
-  return Math.min(0.98, Math.max(0.8, worst - 3 * (1 - usual)));
 }

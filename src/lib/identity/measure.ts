@@ -1,8 +1,8 @@
 import { correlation } from '../spectra/compare/correlation';
 import { bestRivals, type RivalScore } from '../spectra/compare/rivals';
-import { classDistances } from '../spectra/model/distances';
 import { applySteps } from '../spectra/preprocess/steps';
 import type { Spectrum } from '../spectra/spectrum';
+import { noisyDistances } from './noisyDistances';
 import type { PreparedMethod, PreparedRivals } from './prepared';
 import { correctAxis } from './variation';
 
@@ -10,6 +10,7 @@ import { correctAxis } from './variation';
 export interface Measurement {
   readonly correlation: number;
   readonly searchedShiftCm1: number;
+  /** Both distances with allowance for noise beyond the references' own. */
   readonly t2: number;
   readonly q: number;
   readonly rivals: readonly RivalScore[];
@@ -41,7 +42,8 @@ const SMOOTH = 2;
 export function measure(scan: Spectrum, method: PreparedMethod, rivals: PreparedRivals): Measurement {
   const { definition } = method.fitted;
   const best = bestShift(scan, method, definition.shiftSearchCm1);
-  const { t2, q } = classDistances(method.model, best.treated);
+  const moved = correctAxis(scan, null, best.shiftCm1);
+  const { t2, q } = noisyDistances(moved, best.treated, method);
   return {
     correlation: best.correlation,
     searchedShiftCm1: best.shiftCm1,
@@ -49,7 +51,7 @@ export function measure(scan: Spectrum, method: PreparedMethod, rivals: Prepared
     q,
     rivals: bestRivals(best.treated, rivals.matrix, RANKED),
     linerCorrelation: method.liner === null ? 0 : correlation(best.treated, method.liner),
-    display: compareDisplay(correctAxis(scan, null, best.shiftCm1), method)
+    display: compareDisplay(moved, method)
   };
 }
 

@@ -45,6 +45,11 @@ export interface FittedMethod {
     readonly intensity: readonly number[];
   }[];
   readonly model: ClassModel;
+  /**
+   * Sum of squares that the references' own noise leaves after the recipe, mean over references. Absent in methods
+   * fitted before engine 1.1: their scans get no allowance for noise.
+   */
+  readonly noiseEnergy?: number;
   /** Conformal scores of the held-out references (nonconformity, ascending). */
   readonly heldOutNonconformity: readonly number[];
   /** Bands of the reference mean before the derivative, for explanation: position cm-1, relative height. */

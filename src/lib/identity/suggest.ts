@@ -1,11 +1,16 @@
 import { crossValidateComponents } from '../spectra/model/crossValidateComponents';
-import { DEFAULT_RECIPE } from '../spectra/preprocess/recipe';
 import { applySteps } from '../spectra/preprocess/steps';
-import { suggestMinCorrelation } from './fitMethod';
 import type { LabelledReference, MethodDefinition } from './method';
+import { correlationAt, noiseCost, ratioFor } from './noiseBudget';
+import { suggestMinCorrelation } from './suggestMinCorrelation';
+import { suggestRecipe } from './suggestRecipe';
 
 /** Most components suggested: more than this and a class model begins to explain contaminants too. */
 const MOST_COMPONENTS = 6;
+
+/** A scan of this signal-to-noise ratio should not miss the correlation limit for its noise alone. */
+const FAINT_BUT_FAIR = 25;
+const LEAST_CORRELATION = 0.8;
 
 /** A definition that suits ordinary powders and these references; a method owner starts from it. */
 export function suggestDefinition(
@@ -15,7 +20,7 @@ export function suggestDefinition(
   const draft: MethodDefinition = {
     excitationNm,
     excitationToleranceNm: 1,
-    recipe: recipeFor(references),
+    recipe: suggestRecipe(references.map((reference) => reference.spectrum)),
     criteria: {
       minCorrelation: 0.9,
       guardBand: 0.02,
@@ -29,37 +34,33 @@ export function suggestDefinition(
     shiftSearchCm1: 1
   };
   const sources = references.map((reference) => reference.source);
-  const minCorrelation = suggestMinCorrelation(draft, references);
+  const cost = noiseCost(
+    references.map((reference) => reference.spectrum),
+    draft.recipe
+  );
+  const minCorrelation = Math.max(
+    LEAST_CORRELATION,
+    Math.min(suggestMinCorrelation(draft, references), correlationAt(FAINT_BUT_FAIR, cost))
+  );
+  // A scan whose noise alone would take it below the limit is measured again, not failed.
+  const minSignalToNoise = Math.max(
+    draft.criteria.minSignalToNoise,
+    Math.ceil(ratioFor(minCorrelation, cost))
+  );
   let components = 3;
-  if (new Set(sources).size >= 2 && references.length >= 5) {
+  if (largestLeavesEnough(sources)) {
     const rows = references.map((reference) => applySteps(reference.spectrum, draft.recipe).intensity);
     components = Math.max(
       3,
       Math.min(MOST_COMPONENTS, crossValidateComponents(rows, sources, MOST_COMPONENTS).suggested + 2)
     );
   }
-  return { ...draft, criteria: { ...draft.criteria, minCorrelation, components } };
+  return { ...draft, criteria: { ...draft.criteria, minCorrelation, minSignalToNoise, components } };
 }
 
-/** Room left at each end for an instrument's axis correction, cm-1. */
-const END_ROOM_CM1 = 5;
-
-/** The default recipe with its grid drawn in to what all references cover. */
-function recipeFor(references: readonly LabelledReference[]): MethodDefinition['recipe'] {
-  const from = Math.max(...references.map(({ spectrum }) => spectrum.shiftCm1[0])) + END_ROOM_CM1;
-  const to =
-    Math.min(...references.map(({ spectrum }) => spectrum.shiftCm1[spectrum.shiftCm1.length - 1])) -
-    END_ROOM_CM1;
-  return DEFAULT_RECIPE.map((step) => {
-    if (step.name !== 'resample') return step;
-    const { fromCm1, toCm1 } = step.options as { fromCm1: number; toCm1: number };
-    return {
-      ...step,
-      options: {
-        ...step.options,
-        fromCm1: Math.max(fromCm1, Math.ceil(from)),
-        toCm1: Math.min(toCm1, Math.floor(to))
-      }
-    };
-  });
+/** With one source left out, at least four references must stay, or there is nothing to cross-validate. */
+function largestLeavesEnough(sources: readonly string[]): boolean {
+  const counts = new Map<string, number>();
+  for (const source of sources) counts.set(source, (counts.get(source) ?? 0) + 1);
+  return counts.size >= 2 && sources.length - Math.max(...counts.values()) >= 4;
 }
