@@ -68,20 +68,7 @@ export default {
         [`${size / 16}rem`, { lineHeight: String(lineHeight) }]
       ])
     ),
-    fontFamily: {
-      sans: [
-        "'Atkinson Hyperlegible Next Variable'",
-        "'Atkinson Hyperlegible Next'",
-        'system-ui',
-        'sans-serif'
-      ],
-      mono: [
-        "'Atkinson Hyperlegible Mono Variable'",
-        "'Atkinson Hyperlegible Mono'",
-        'ui-monospace',
-        'monospace'
-      ]
-    },
+    fontFamily: { sans: 'var(--sans)', mono: 'var(--mono)' },
     fontWeight: { normal: '400', semibold: '600', bold: '700' },
     borderRadius: { none: '0', DEFAULT: '2px' },
     boxShadow: { none: 'none' },

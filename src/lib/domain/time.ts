@@ -35,5 +35,5 @@ const MONTHS = 'Jan Feb Mar Apr May Jun Jul Aug Sep Oct Nov Dec'.split(' ');
 /** The day of an instant as lists show it: `1 Dec 2026`. Never in figures alone, which are read two ways. */
 export function listDay(instant: Date | string, timeZone: string): string {
   const of = parts(instant, timeZone, { year: 'numeric', month: 'numeric', day: 'numeric' });
-  return `${of('day')} ${MONTHS[Number(of('month')) - 1]} ${of('year')}`;
+  return `${Number(of('day'))} ${MONTHS[Number(of('month')) - 1]} ${of('year')}`;
 }

@@ -13,5 +13,9 @@ export function intensityText(value: number): string {
   return minus(value.toPrecision(3));
 }
 
+/** A figure on the intensity axis: as short as it is exact. */
+export const tickText = (value: number): string =>
+  Math.abs(value) >= 10_000 ? intensityText(value) : minus(String(Number(value.toPrecision(6))));
+
 /** A difference, always with its sign. */
 export const signedText = (value: number): string => (value > 0 ? '+' : '') + intensityText(value);

@@ -24,11 +24,13 @@ export function lineStyles(lines: readonly ChartLine[]): LineStyle[] {
   });
 }
 
+/** A line's offset in words, empty where it has none. */
+export const offsetText = (line: ChartLine): string =>
+  line.offset ? `offset ${line.offset > 0 ? '+' : '\u2212'}${Math.abs(line.offset)}` : '';
+
 /** A line's label with its offset, where it has one. */
 export const lineLabel = (line: ChartLine): string =>
-  line.offset
-    ? `${line.label} (offset ${line.offset > 0 ? '+' : '\u2212'}${Math.abs(line.offset)})`
-    : line.label;
+  line.offset ? `${line.label} (${offsetText(line)})` : line.label;
 
 /** As many lines as are named beside the plot; of more, the scan, the references and the first others. */
 export const MOST_LABELS = 8;
