@@ -228,6 +228,31 @@ describe('what a scan needs', () => {
     expect(await statusOf()).toBe('awaiting');
   });
 
+  test("R-115: the record's time is the server's, whatever the sender's clock says", async () => {
+    const yesterday = new Date(Date.now() - 86_400_000).toISOString();
+    const scanId = randomUUID();
+    must(
+      await recordScan(
+        database.db,
+        people.operator.act,
+        {
+          scanId,
+          barcode: lot.barcodes[0],
+          instrumentId: plant.instrumentId,
+          repeatReason: '',
+          sentLate: false,
+          readOptions: {},
+          clientTime: yesterday
+        },
+        spectrumFile('CAC', 'clock')
+      )
+    );
+    const [row] = await database.ownerSql`
+      select client_time, abs(extract(epoch from clock_timestamp() - recorded_at))::float as seconds from scans where id = ${scanId}`;
+    expect((row.client_time as Date).toISOString()).toBe(yesterday);
+    expect(row.seconds).toBeLessThan(60);
+  });
+
   test('R-038: each act is an entry of its own, at its own time', async () => {
     must(await scan('CAC', 0));
     must(await scan('CAC', 1));

@@ -18,7 +18,7 @@ export const load: PageServerLoad = async ({ locals, params }) => {
     fitted: stored && {
       engineVersion: stored.fitted.engineVersion,
       limits: stored.fitted.model.limits,
-      n: stored.fitted.model.n,
+      referenceCount: stored.fitted.referenceCount,
       sourceCount: stored.fitted.sourceCount,
       cautions: stored.fitted.cautions,
       bands: stored.fitted.bands,
