@@ -32,14 +32,14 @@ export const offsetText = (line: ChartLine): string =>
 export const lineLabel = (line: ChartLine): string =>
   line.offset ? `${line.label} (${offsetText(line)})` : line.label;
 
-/** As many lines as are named beside the plot; of more, the scan, the references and the first others. */
-export const MOST_LABELS = 8;
-
-/** Indices of the lines that are named, in the lines' order. */
-export function namedLines(lines: readonly ChartLine[]): number[] {
+/**
+ * Indices of the lines that are named, in the lines' order: all, or of more than `most` the scan, the references and
+ * the first others, with one place left to say how many more there are.
+ */
+export function namedLines(lines: readonly ChartLine[], most = 8): number[] {
   const order = lines.map((_, index) => index);
-  if (lines.length <= MOST_LABELS) return order;
-  const first = order.filter((index) => lines[index].kind !== 'other').slice(0, MOST_LABELS - 1);
-  const rest = order.filter((index) => !first.includes(index)).slice(0, MOST_LABELS - 1 - first.length);
+  if (lines.length <= most) return order;
+  const first = order.filter((index) => lines[index].kind !== 'other').slice(0, most - 1);
+  const rest = order.filter((index) => !first.includes(index)).slice(0, most - 1 - first.length);
   return [...first, ...rest].sort((a, b) => a - b);
 }
