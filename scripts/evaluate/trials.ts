@@ -4,7 +4,6 @@ import { fitMethod } from '../../src/lib/identity/fitMethod';
 import { makeLibraryEntry } from '../../src/lib/identity/library';
 import type { AxisCorrection, FittedMethod, Library, LibraryEntry } from '../../src/lib/identity/method';
 import { suggestDefinition } from '../../src/lib/identity/suggest';
-import { correctAxis } from '../../src/lib/identity/variation';
 import type { Fold } from './folds';
 import type { LabelledFile } from './spectraFolder';
 
