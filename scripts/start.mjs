@@ -162,6 +162,10 @@ function announce(origin, accountsFile, demo) {
   say('');
   say(`Wharfinger is ready: ${origin}`);
   if (accounts.length > 0) say(['', 'Demo accounts (name, password, person, role):', ...accounts].join('\n'));
+  if (accounts.length > 0)
+    say(
+      `\nSpectra to scan, a wrong one and polystyrene for the checks: ${join(dirname(accountsFile), 'demo-spectra')}`
+    );
   say('\nCtrl-C stops it.');
 }
 

@@ -84,6 +84,12 @@ describe('R-072: no testing into compliance', () => {
     const [deviation] =
       await database.ownerSql`select origin, phase from deviations where lot_id = ${lot.lotId}`;
     expect(deviation).toMatchObject({ origin: 'fail', phase: 'assess' });
+    const [mail] = await database.ownerSql`
+      select to_address, subject, body from outbox_mails where kind = 'scan-failed' order by created_at desc limit 1`;
+    expect(mail.to_address).toBe('approver@example.test');
+    // A link and no result: mail is read by others too.
+    expect(mail.body).toContain(`/lots/${lot.lotId}`);
+    expect(mail.body).not.toMatch(/carbonate|0\.\d/);
   });
 
   test("R-049: a repeat needs an approver's signed grant, works once, and both results stay", async () => {

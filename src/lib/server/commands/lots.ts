@@ -9,6 +9,7 @@ import { containers, dispositions, limitTests, lotPapers, lots } from '../db/sch
 import { transact } from '../db/transaction';
 import type { Act } from '../platform/act';
 import { issueCertificate } from '../platform/certificate/issue';
+import { queueMail } from '../platform/mail';
 import { nextNumber } from '../platform/numberSeries';
 import { keepRawFile, type IncomingFile } from '../platform/rawFiles';
 import { proveIdentity, sign, type SignatureProof } from '../platform/signing';
@@ -113,6 +114,13 @@ async function writeDisposition(
     before: { status: detail.lot.status },
     after: { status, signature: signature.id, recordSha256: signature.sha256 },
     reason: input.reason.trim()
+  });
+  await queueMail(tx, {
+    to: { userId: detail.delivery.receivedBy },
+    kind: 'lot-decided',
+    subject: `[Wharfinger] Lot ${detail.lot.lotNumber}: decided`,
+    body: 'The disposition of the lot is signed.',
+    link: `/lots/${detail.lot.id}`
   });
   if (input.outcome === 'reject') return { certificateId: null };
   const data = await getCertificateData(tx, {

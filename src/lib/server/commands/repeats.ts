@@ -5,6 +5,7 @@ import type { Database } from '../db/client';
 import { containers, repeatRequests } from '../db/schema';
 import { transact } from '../db/transaction';
 import type { Act } from '../platform/act';
+import { queueMail } from '../platform/mail';
 import { proveIdentity, sign } from '../platform/signing';
 import { recordTrail } from '../platform/trail';
 import { getScan } from '../queries/scans';
@@ -53,6 +54,13 @@ export async function requestRepeat(
       lotId: lot.id,
       after: { afterScan: scanId, cause },
       reason: reason.trim()
+    });
+    await queueMail(tx, {
+      to: { action: 'repeat.grant', siteId: act.actor.siteId },
+      kind: 'repeat-asked',
+      subject: `[Wharfinger] Lot ${lot.lotNumber}: a repeat is asked`,
+      body: 'An operator asks for another scan of a locked container.',
+      link: `/lots/${lot.id}#repeats`
     });
     return done({ id: row.id });
   });
@@ -130,6 +138,13 @@ export async function decideRepeat(
       lotId: found.lot.id,
       after: { request: request.id, outcome: input.outcome, signature: signature.id },
       reason: input.reason.trim()
+    });
+    await queueMail(tx, {
+      to: { userId: request.requestedBy },
+      kind: 'repeat-decided',
+      subject: `[Wharfinger] Lot ${found.lot.lotNumber}: repeat ${input.outcome}`,
+      body: `Your request for another scan was ${input.outcome}.`,
+      link: `/bay/${found.lot.id}`
     });
     return done({ containerId: found.container.id });
   });

@@ -11,6 +11,7 @@ import { containers, instrumentLog, lots, repeatRequests, scans, sites } from '.
 import { transact } from '../db/transaction';
 import type { Act } from '../platform/act';
 import { openDeviation } from '../platform/deviations';
+import { mailOfFail, mailOfReadyLot } from '../platform/lotMails';
 import { keepRawFile, sha256Hex, type IncomingFile } from '../platform/rawFiles';
 import { refuseFile } from '../platform/refusedFile';
 import { storeDecision } from '../platform/storeDecision';
@@ -281,9 +282,11 @@ async function afterScan(
       containerId: container.id,
       scanId: input.scanId
     });
+    await mailOfFail(tx, act.actor.siteId, lot);
   }
   const all = await listContainers(tx, lot.id);
   const complete = all.every((row) => (row.id === container.id ? status : row.status) === 'pass');
+  if (complete) await mailOfReadyLot(tx, act.actor.siteId, lot);
   await tx
     .update(lots)
     .set({
