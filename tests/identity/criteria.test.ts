@@ -22,15 +22,32 @@ interface Figures {
   readonly q: number;
   readonly unexplained: number;
   readonly missing: number;
+  readonly noiseHeight: number;
+  readonly admixture: number;
   readonly rival: number | null;
 }
-const GOOD: Figures = { correlation: 0.99, t2: 5, q: 0.1, unexplained: 0.01, missing: 0.01, rival: 0.5 };
+const GOOD: Figures = {
+  correlation: 0.99,
+  t2: 5,
+  q: 0.1,
+  unexplained: 0.01,
+  missing: 0.01,
+  noiseHeight: 0,
+  admixture: 0,
+  rival: 0.5
+};
 
 function measurementOf(figures: Figures): Measurement {
   const none = new Float64Array(0);
   return {
     correlation: figures.correlation,
     searchedShiftCm1: 0,
+    matchedWidthCm1: 0,
+    noiseShare: 0,
+    admixture:
+      figures.admixture > 0
+        ? { index: 0, share: figures.admixture, certainShare: figures.admixture, explained: 1 }
+        : null,
     t2: figures.t2,
     q: figures.q,
     rivals: figures.rival === null ? [] : [{ index: 0, correlation: figures.rival }],
@@ -40,7 +57,11 @@ function measurementOf(figures: Figures): Measurement {
       residual: none,
       outside: none,
       largestUnexplained: figures.unexplained,
-      largestMissing: figures.missing
+      largestMissing: figures.missing,
+      noiseHeight: figures.noiseHeight,
+      mean: none,
+      low: none,
+      high: none
     }
   };
 }
@@ -72,7 +93,8 @@ describe('a criterion is judged on the value as computed, not as shown', () => {
     ['hotelling-t2', (t2) => ({ t2 }), 20],
     ['q-residual', (q) => ({ q }), 0.5],
     ['unexplained-bands', (unexplained) => ({ unexplained }), 0.1],
-    ['missing-bands', (missing) => ({ missing }), 0.2]
+    ['missing-bands', (missing) => ({ missing }), 0.2],
+    ['admixture', (admixture) => ({ admixture }), 0.08]
   ];
   it.each(distances)(
     '%s: at its limit met, just above near, up to half above near, beyond not met',
@@ -104,7 +126,7 @@ describe('a verdict follows from its criteria alone', () => {
     judged({}).map((result, i) => ({ ...result, outcome: outcomes[i] ?? 'met' }));
 
   it('every criterion met is a pass', () => {
-    expect(ALL).toHaveLength(6);
+    expect(ALL).toHaveLength(7);
     expect(verdictOf(judged({}))).toBe('pass');
   });
 
@@ -119,7 +141,7 @@ describe('a verdict follows from its criteria alone', () => {
   );
 
   it('one not met is a fail however many others are near', () => {
-    expect(verdictOf(results(['near', 'near', 'near', 'near', 'near', 'not-met']))).toBe('fail');
+    expect(verdictOf(results(['near', 'near', 'near', 'near', 'near', 'near', 'not-met']))).toBe('fail');
   });
 
   it('a pass within a tenth of a limit is marked as near it', () => {
@@ -151,6 +173,8 @@ describe('a verdict follows from its criteria alone', () => {
       q: fc.double({ min: 0, max: 2, noNaN: true }),
       unexplained: fc.double({ min: 0, max: 1, noNaN: true }),
       missing: fc.double({ min: 0, max: 1, noNaN: true }),
+      noiseHeight: fc.constant(0),
+      admixture: fc.double({ min: 0, max: 1, noNaN: true }),
       rival: fc.double({ min: -1, max: 1, noNaN: true })
     });
     const worse = fc.double({ min: 0, max: 1, noNaN: true });
@@ -158,7 +182,7 @@ describe('a verdict follows from its criteria alone', () => {
       fc.property(
         figures,
         worse,
-        fc.constantFrom(...(Object.keys(GOOD) as (keyof Figures)[])),
+        fc.constantFrom(...(Object.keys(GOOD) as (keyof Figures)[]).filter((name) => name !== 'noiseHeight')),
         (from, by, which) => {
           const change = which === 'correlation' ? from.correlation - by : (from[which] as number) + by * 10;
           const after = verdictOf(judged({ ...from, [which]: change }));

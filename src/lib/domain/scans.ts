@@ -88,6 +88,7 @@ export const CRITERION_NAMES: Readonly<Record<CriterionCode, string>> = {
   'hotelling-t2': 'Distance inside the class model (T2)',
   'q-residual': 'Distance from the class model (Q)',
   'best-match': 'Gap to the best other material',
+  admixture: 'Share that looks like another material',
   'unexplained-bands': 'Largest band not expected',
   'missing-bands': 'Largest band missing'
 };

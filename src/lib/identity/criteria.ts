@@ -5,6 +5,9 @@ import type { MethodCriteria } from './method';
 /** A distance up to this many times its limit is near it: a person decides. */
 const DISTANCE_GUARD = 1.5;
 const BAND_GUARD = 1.5;
+/** Share of another material that is let pass where a method does not say. */
+const MAX_ADMIXTURE = 0.08;
+const ADMIXTURE_GUARD = 1.5;
 /** Margins smaller than this, in units of the limit, mark a pass as near a limit. */
 const NEAR_LIMIT = 0.1;
 
@@ -16,6 +19,7 @@ export function judge(
 ): CriterionResult[] {
   const { correlation, display } = measured;
   const rival = measured.rivals[0]?.correlation ?? null;
+  const band = criteria.maxUnexplainedBand;
   const results = [
     atLeast(
       'correlation',
@@ -26,10 +30,20 @@ export function judge(
     ),
     atMost('hotelling-t2', measured.t2, limits.t2, DISTANCE_GUARD),
     atMost('q-residual', measured.q, limits.q, DISTANCE_GUARD),
-    atMost('unexplained-bands', display.largestUnexplained, criteria.maxUnexplainedBand, BAND_GUARD),
+    // A weak scan's noise stands out like small bands; the limits carry it, so that weak is not called wrong.
+    atMost('unexplained-bands', display.largestUnexplained, band + display.noiseHeight, BAND_GUARD),
     // A missing band is judged twice as leniently: orientation takes height from bands, and nothing adds any.
-    atMost('missing-bands', display.largestMissing, 2 * criteria.maxUnexplainedBand, BAND_GUARD)
+    atMost('missing-bands', display.largestMissing, 2 * band + display.noiseHeight, BAND_GUARD)
   ];
+  if (rival !== null)
+    results.push(
+      atMost(
+        'admixture',
+        measured.admixture?.certainShare ?? 0,
+        criteria.maxAdmixture ?? MAX_ADMIXTURE,
+        ADMIXTURE_GUARD
+      )
+    );
   // With the rival ahead the material is another one; with it close behind, nobody can tell.
   if (rival !== null)
     results.push(atLeast('best-match', correlation - rival, criteria.rivalGap, 0, criteria.rivalGap));

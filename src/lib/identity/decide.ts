@@ -52,8 +52,7 @@ export function decide(request: DecideRequest): Decision {
     instrumentNm: request.instrument.excitationNm,
     check: request.check.state
   });
-  if (gates.some((gate) => !gate.met))
-    return ungraded(request, gates, axisOf(read, correction, 0), read.notes);
+  if (gates.some((gate) => !gate.met)) return ungraded(request, gates, axisOf(read, correction), read.notes);
   try {
     return graded(request, read, scan, method, correction, gates);
   } catch (error) {
@@ -62,7 +61,7 @@ export function decide(request: DecideRequest): Decision {
     return ungraded(
       request,
       [...gates, { code: 'not-treatable', met: false, message }],
-      axisOf(read, correction, 0),
+      axisOf(read, correction),
       read.notes
     );
   }
@@ -79,10 +78,10 @@ function graded(
   const { gates: signalled, signal } = signalGates(scan, method);
   const gates = [...first, ...signalled];
   if (signalled.some((gate) => !gate.met))
-    return ungraded(request, gates, axisOf(read, correction, 0), read.notes);
+    return ungraded(request, gates, axisOf(read, correction), read.notes);
   const rivals = prepareRivals(method, request.methodSha256, request.library, request.materialId);
   const measured = measure(scan, method, rivals);
-  const axis = axisOf(read, correction, measured.searchedShiftCm1);
+  const axis = axisOf(read, correction, measured);
   const liner = linerGate(measured, request.method);
   if (!liner.met) return ungraded(request, [...gates, liner], axis, read.notes);
   const criteria = judge(measured, request.method.definition.criteria, request.method.model.limits);
@@ -130,6 +129,8 @@ function scoresOf(measured: Measurement, ratio: number, method: FittedMethod): S
     bestRivalCorrelation: measured.rivals[0]?.correlation ?? null,
     signalToNoise: ratio,
     largestUnexplainedBand: measured.display.largestUnexplained,
+    admixtureShare: measured.admixture?.certainShare ?? 0,
+    noiseShare: measured.noiseShare,
     conformalP: conformalP(method.heldOutNonconformity, nonconformity(measured.t2, measured.q, limits))
   };
 }
@@ -137,7 +138,7 @@ function scoresOf(measured: Measurement, ratio: number, method: FittedMethod): S
 function axisOf(
   { spectrum }: ReadSpectrum,
   correction: AxisCorrection | null,
-  searchedShiftCm1: number
+  measured?: Measurement
 ): NonNullable<Decision['axis']> {
   const { shiftCm1 } = spectrum;
   return {
@@ -145,7 +146,8 @@ function axisOf(
     firstCm1: shiftCm1[0],
     lastCm1: shiftCm1[shiftCm1.length - 1],
     correction: correction && { shiftCm1: correction.shiftCm1, scale: correction.scale },
-    searchedShiftCm1
+    searchedShiftCm1: measured?.searchedShiftCm1 ?? 0,
+    matchedWidthCm1: measured?.matchedWidthCm1 ?? 0
   };
 }
 

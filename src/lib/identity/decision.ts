@@ -20,7 +20,13 @@ export type GateCode =
   | 'not-treatable';
 
 export type CriterionCode =
-  'correlation' | 'hotelling-t2' | 'q-residual' | 'best-match' | 'unexplained-bands' | 'missing-bands';
+  | 'correlation'
+  | 'hotelling-t2'
+  | 'q-residual'
+  | 'best-match'
+  | 'admixture'
+  | 'unexplained-bands'
+  | 'missing-bands';
 
 export interface QualityGate {
   readonly code: GateCode;
@@ -98,6 +104,8 @@ export interface Decision {
     readonly lastCm1: number;
     readonly correction: { readonly shiftCm1: number; readonly scale: number } | null;
     readonly searchedShiftCm1: number;
+    /** Full width by which the references were broadened to the scan's resolution; negative: the scan was. */
+    readonly matchedWidthCm1: number;
   } | null;
   readonly explanation: Explanation;
   readonly readNotes: readonly string[];
@@ -112,6 +120,10 @@ export interface Scores {
   readonly bestRivalCorrelation: number | null;
   readonly signalToNoise: number;
   readonly largestUnexplainedBand: number;
+  /** Share of the signal that looks like one other material; 0 where none stands out. */
+  readonly admixtureShare: number;
+  /** Share of the treated scan that is its own noise, 0 to 1; the limits of T2 and Q allow for it. */
+  readonly noiseShare: number;
   /** Conformal p-value among the held-out references. */
   readonly conformalP: number;
 }

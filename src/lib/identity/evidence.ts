@@ -36,9 +36,9 @@ export function evidenceOf(request: DecideRequest): EvidenceView | null {
     return {
       gridCm1: Array.from(method.display.gridCm1),
       scan: Array.from(display.scan),
-      mean: Array.from(method.display.mean),
-      low: Array.from(method.display.low),
-      high: Array.from(method.display.high),
+      mean: Array.from(display.mean),
+      low: Array.from(display.low),
+      high: Array.from(display.high),
       residual: Array.from(display.residual),
       rival: entry ? { name: entry.name, itemCode: entry.itemCode, correlation: best.correlation } : null
     };

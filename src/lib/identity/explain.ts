@@ -69,6 +69,10 @@ const REASONS: Readonly<Record<CriterionResult['code'], { readonly fail: string;
     fail: 'The spectrum does not match what the label claims.',
     near: 'The claimed material and another one match nearly equally well.'
   },
+  admixture: {
+    fail: 'The spectrum looks like the claimed material mixed with another one.',
+    near: 'The spectrum may hold a little of another material.'
+  },
   'unexplained-bands': {
     fail: 'The spectrum has bands that the claimed material does not have.',
     near: 'The spectrum may have a band that the claimed material does not have.'

@@ -8,7 +8,7 @@ import { StepRefusal } from '../spectra/preprocess/step';
 import type { Spectrum } from '../spectra/spectrum';
 import { ENGINE_VERSION } from './engineVersion';
 import type { FittedMethod, LabelledReference, MethodDefinition } from './method';
-import { withLeastQ } from './leastQ';
+import { withLeastLimits } from './leastLimits';
 import { energyOf, noiseAfterRecipe } from './noiseAfterRecipe';
 import { correctAxis, instrumentVariants } from './variation';
 
@@ -76,7 +76,7 @@ function fit(definition: MethodDefinition, references: readonly LabelledReferenc
     significance: criteria.significance,
     sources
   });
-  const model = withLeastQ(fitted.model, sourceCount);
+  const model = withLeastLimits(fitted.model, sourceCount);
   const { t2, q } = fitted.heldOut;
   const heldOutNonconformity = Array.from(t2, (value, i) => nonconformity(value, q[i], model.limits));
   const grid = applySteps(corrected[0], recipe, means).shiftCm1;

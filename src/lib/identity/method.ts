@@ -13,6 +13,8 @@ export interface MethodDefinition {
   readonly correctAxis: boolean;
   /** Residual shift, cm-1, that the scorer may search on either side of the corrected axis; 0 turns it off. */
   readonly shiftSearchCm1: number;
+  /** Difference of resolution, cm-1 of full width, that the scorer may make up for by broadening the sharper side. */
+  readonly widthSearchCm1?: number;
 }
 
 export interface MethodCriteria {
@@ -30,6 +32,8 @@ export interface MethodCriteria {
   readonly minSignalToNoise: number;
   /** Largest unexplained band, as a fraction of the strongest reference band. */
   readonly maxUnexplainedBand: number;
+  /** Largest share of the signal that may look like one other material of the library; absent: 0.08. */
+  readonly maxAdmixture?: number;
 }
 
 /** A fitted, self-contained, JSON-able method: what is frozen when a version becomes effective. */

@@ -1,16 +1,28 @@
+import { interleavedRow } from '../spectra/compare/interleavedRows';
 import { packRivals, type RivalMatrix } from '../spectra/compare/rivals';
-import { packClassModel, type PackedClassModel } from '../spectra/model/distances';
+import { packClassModel } from '../spectra/model/distances';
 import { displayPart } from '../spectra/preprocess/recipe';
 import { applySteps, type StepSpec } from '../spectra/preprocess/steps';
 import { StepRefusal } from '../spectra/preprocess/step';
 import type { Spectrum } from '../spectra/spectrum';
+import { rivalsOutside, type RivalsOutside } from './admixture';
+import { templatesOf, type AlignmentBounds, type Templates } from './alignment';
+import { BoundedCache } from './boundedCache';
+import { centredSquares } from './broaden';
+import { classAtWidth, type ClassAtWidth } from './classAtWidth';
 import { linerSpectrum } from './liner';
 import type { FittedMethod, Library, LibraryEntry } from './method';
 
 /** A fitted method in working form. */
 export interface PreparedMethod {
   readonly fitted: FittedMethod;
-  readonly model: PackedClassModel;
+  readonly gridCm1: Float64Array;
+  /** The class at each width the reference may be broadened to, cm-1. */
+  classAt(widthCm1: number): ClassAtWidth;
+  readonly templates: Templates;
+  readonly bounds: AlignmentBounds;
+  /** Squared length of the treated mean, centred: what shares of signal and noise are counted in. */
+  readonly squares: number;
   readonly stepReferences: readonly Spectrum[];
   readonly display: {
     readonly recipe: readonly StepSpec[];
@@ -28,15 +40,27 @@ export interface PreparedMethod {
 export interface PreparedRivals {
   readonly entries: readonly LibraryEntry[];
   readonly matrix: RivalMatrix;
+  readonly outside: RivalsOutside;
+  /** One row as a spectrum again, centred and of unit length. */
+  rows(index: number): Float64Array;
 }
 
-const KEEP = 64;
-const methods = new Map<string, PreparedMethod>();
-const rivals = new Map<string, PreparedRivals>();
+const FLOAT_BYTES = 8;
+const MIB = 1024 * 1024;
+const methods = new BoundedCache<PreparedMethod>(
+  64,
+  96 * MIB,
+  (method) =>
+    FLOAT_BYTES *
+    method.gridCm1.length *
+    (method.templates.shiftsCm1.length + method.fitted.model.loadings.length + 2) *
+    method.templates.widthsCm1.length
+);
+const rivals = new BoundedCache<PreparedRivals>(256, 192 * MIB, ({ matrix }) => matrix.values.byteLength);
 
 /** Working form of a method; kept by its hash, since a hash names one content for ever. */
 export function prepareMethod(fitted: FittedMethod, sha256: string): PreparedMethod {
-  return remembered(methods, sha256, () => {
+  return methods.get(sha256, () => {
     const references = fitted.stepReferences.map(({ shiftCm1, intensity }) => ({
       shiftCm1: Float64Array.from(shiftCm1),
       intensity: Float64Array.from(intensity)
@@ -47,9 +71,24 @@ export function prepareMethod(fitted: FittedMethod, sha256: string): PreparedMet
       toCm1: number;
       stepCm1: number;
     };
+    const gridCm1 = Float64Array.from(fitted.gridCm1);
+    const model = packClassModel(fitted.model);
+    const bounds = {
+      shiftCm1: fitted.definition.shiftSearchCm1,
+      widthCm1: fitted.definition.widthSearchCm1 ?? 0
+    };
+    const byWidth = new Map<number, ClassAtWidth>();
     return {
       fitted,
-      model: packClassModel(fitted.model),
+      gridCm1,
+      classAt(widthCm1) {
+        const made = byWidth.get(widthCm1) ?? classAtWidth(model, gridCm1, widthCm1);
+        byWidth.set(widthCm1, made);
+        return made;
+      },
+      templates: templatesOf(model.mean, gridCm1, bounds),
+      bounds,
+      squares: centredSquares(model.mean),
       stepReferences: references,
       display: {
         recipe: displayPart(recipe),
@@ -71,7 +110,7 @@ export function prepareRivals(
   library: Library,
   ownMaterialId: string
 ): PreparedRivals {
-  return remembered(rivals, `${methodSha256} ${library.sha256} ${ownMaterialId}`, () => {
+  return rivals.get(`${methodSha256} ${library.sha256} ${ownMaterialId}`, () => {
     const entries: LibraryEntry[] = [];
     const rows: Float64Array[] = [];
     for (const entry of library.entries) {
@@ -81,7 +120,13 @@ export function prepareRivals(
       entries.push(entry);
       rows.push(row);
     }
-    return { entries, matrix: packRivals(rows) };
+    const matrix = packRivals(rows);
+    return {
+      entries,
+      matrix,
+      outside: rivalsOutside(matrix, method.classAt(0)),
+      rows: (index) => interleavedRow(matrix, index)
+    };
   });
 }
 
@@ -96,13 +141,4 @@ function treated(
     if (error instanceof StepRefusal) return null;
     throw error;
   }
-}
-
-function remembered<T>(store: Map<string, T>, key: string, make: () => T): T {
-  const known = store.get(key);
-  if (known !== undefined) return known;
-  const made = make();
-  if (store.size >= KEEP) store.delete(store.keys().next().value as string);
-  store.set(key, made);
-  return made;
 }

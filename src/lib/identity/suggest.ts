@@ -31,7 +31,8 @@ export function suggestDefinition(
       maxUnexplainedBand: 0.12
     },
     correctAxis: true,
-    shiftSearchCm1: 1
+    shiftSearchCm1: 1,
+    widthSearchCm1: 8
   };
   const sources = references.map((reference) => reference.source);
   const cost = noiseCost(

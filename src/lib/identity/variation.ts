@@ -18,15 +18,18 @@ export function correctAxis(
 }
 
 /**
- * A reference as other instruments would have it: a little to either side, and a little broader. Added to the
- * references of a class model, these span the directions in which instruments differ, so that a shift or a
- * resolution within the usual tolerance is no reason to reject.
+ * A reference as other instruments would have it: a little to either side, a little broader and a little sharper.
+ * Added to the references of a class model, these span the directions in which instruments differ, so that a shift or
+ * a resolution within the usual tolerance is no reason to reject; being in pairs, they leave the mean where it was.
  */
 export function instrumentVariants(spectrum: Spectrum): Spectrum[] {
+  const broad = broadened(spectrum, BROADENING_CM1);
+  const sharp = spectrum.intensity.map((value, i) => 2 * value - broad[i]);
   return [
     correctAxis(spectrum, null, SHIFT_CM1),
     correctAxis(spectrum, null, -SHIFT_CM1),
-    { shiftCm1: spectrum.shiftCm1, intensity: broadened(spectrum, BROADENING_CM1) }
+    { shiftCm1: spectrum.shiftCm1, intensity: broad },
+    { shiftCm1: spectrum.shiftCm1, intensity: sharp }
   ];
 }
 

@@ -53,3 +53,10 @@ export function interleavedDots(rows: InterleavedRows, x: Float64Array): Float64
   }
   return padded.subarray(0, count);
 }
+
+/** One row, taken out again. */
+export function interleavedRow({ count, points, values }: InterleavedRows, index: number): Float64Array {
+  if (!(index >= 0 && index < count)) throw new RangeError(`There is no row ${index} among ${count}.`);
+  const start = Math.floor(index / ABREAST) * points * ABREAST + (index % ABREAST);
+  return Float64Array.from({ length: points }, (_, j) => values[start + j * ABREAST]);
+}
