@@ -1,99 +1,142 @@
-import type { WavenumberStandard } from '../spectra/axis/wavenumberCheck';
+import type { BandTolerance, StandardBand, WavenumberStandard } from '../spectra/axis/wavenumberCheck';
 
-/** A Raman shift standard with its bands as published; `fromMemory` marks positions that are not confirmed. */
-export interface PublishedStandard extends WavenumberStandard {
-  readonly source: string;
-  readonly bands: readonly (WavenumberStandard['bands'][number] & { readonly fromMemory?: true })[];
+/** A band of a standard as published. Every standard deviation is from memory. */
+export interface PublishedBand extends StandardBand {
+  /** Height relative to the strongest band (100), where it was published. */
+  readonly relativeIntensity?: number;
+  /** Set where the position itself was recalled and not found again. */
+  readonly fromMemory?: true;
 }
 
-/** Standards that a performance check may use. Standard deviations are from memory. */
+/** A Raman shift standard with its bands and where they are published. */
+export interface PublishedStandard extends WavenumberStandard {
+  readonly source: string;
+  readonly bands: readonly PublishedBand[];
+}
+
+const E1840 = 'ASTM E1840-96(2022) Table of Raman shift standards (7 laboratories)';
+
+/** [shift cm-1, standard deviation cm-1, relative intensity] */
+type Row = readonly [number, number, number?];
+
+const published = ([shiftCm1, sdCm1, relativeIntensity]: Row): PublishedBand => ({
+  shiftCm1,
+  sdCm1,
+  ...(relativeIntensity === undefined ? {} : { relativeIntensity })
+});
+
+const recalled = (row: Row): PublishedBand => ({ ...published(row), fromMemory: true });
+
+const rows = (list: readonly Row[], as: (row: Row) => PublishedBand): PublishedBand[] => list.map(as);
+
+/** Standards that a performance check may use. reference/calibration holds the same values. */
 export const WAVENUMBER_STANDARDS: readonly PublishedStandard[] = [
   {
     name: 'polystyrene',
-    source: 'ASTM E1840-96(2022) Table of Raman shift standards (7 laboratories)',
-    bands: [
-      { shiftCm1: 620.9, sdCm1: 0.69 },
-      { shiftCm1: 795.8, sdCm1: 0.78 },
-      { shiftCm1: 1001.4, sdCm1: 0.54 },
-      { shiftCm1: 1031.8, sdCm1: 0.43 },
-      { shiftCm1: 1155.3, sdCm1: 0.56 },
-      { shiftCm1: 1450.5, sdCm1: 0.56 },
-      { shiftCm1: 1583.1, sdCm1: 0.86 },
-      { shiftCm1: 1602.3, sdCm1: 0.73 },
-      { shiftCm1: 2852.4, sdCm1: 0.89 },
-      { shiftCm1: 2904.5, sdCm1: 1.22 },
-      { shiftCm1: 3054.3, sdCm1: 1.36 }
-    ]
+    source: E1840,
+    bands: rows(
+      [
+        [620.9, 0.69, 16],
+        [795.8, 0.78, 10],
+        [1001.4, 0.54, 100],
+        [1031.8, 0.43, 27],
+        [1155.3, 0.56, 13],
+        [1450.5, 0.56, 8],
+        [1583.1, 0.86, 12],
+        [1602.3, 0.73, 28],
+        [2852.4, 0.89, 9],
+        [2904.5, 1.22, 13],
+        [3054.3, 1.36, 32]
+      ],
+      published
+    )
   },
   {
     name: 'cyclohexane',
-    source: 'ASTM E1840-96(2022) Table of Raman shift standards (7 laboratories)',
-    bands: [
-      { shiftCm1: 384.1, sdCm1: 0.78 },
-      { shiftCm1: 426.3, sdCm1: 0.41 },
-      { shiftCm1: 801.3, sdCm1: 0.96 },
-      { shiftCm1: 1028.3, sdCm1: 0.45 },
-      { shiftCm1: 1157.6, sdCm1: 0.94 },
-      { shiftCm1: 1266.4, sdCm1: 0.58 },
-      { shiftCm1: 1444.4, sdCm1: 0.3 },
-      { shiftCm1: 2664.4, sdCm1: 0.42 },
-      { shiftCm1: 2852.9, sdCm1: 0.32 },
-      { shiftCm1: 2923.8, sdCm1: 0.36 },
-      { shiftCm1: 2938.3, sdCm1: 0.51 }
-    ]
+    source: E1840,
+    bands: rows(
+      [
+        [384.1, 0.78, 2],
+        [426.3, 0.41, 3],
+        [801.3, 0.96, 95],
+        [1028.3, 0.45, 15],
+        [1157.6, 0.94, 6],
+        [1266.4, 0.58, 14],
+        [1444.4, 0.3, 12],
+        [2664.4, 0.42, 8],
+        [2852.9, 0.32, 100],
+        [2923.8, 0.36, 58],
+        [2938.3, 0.51, 67]
+      ],
+      published
+    )
   },
   {
     name: '4-acetamidophenol',
-    source: 'ASTM E1840-96(2022) Table of Raman shift standards (7 laboratories)',
+    source: E1840,
     bands: [
-      { shiftCm1: 213.3, sdCm1: 1.77, fromMemory: true },
-      { shiftCm1: 329.2, sdCm1: 0.52 },
-      { shiftCm1: 390.9, sdCm1: 0.76 },
-      { shiftCm1: 465.1, sdCm1: 0.3 },
-      { shiftCm1: 504, sdCm1: 0.6 },
-      { shiftCm1: 651.6, sdCm1: 0.5 },
-      { shiftCm1: 710.8, sdCm1: 0.68 },
-      { shiftCm1: 797.2, sdCm1: 0.48 },
-      { shiftCm1: 834.5, sdCm1: 0.46 },
-      { shiftCm1: 857.9, sdCm1: 0.5 },
-      { shiftCm1: 968.7, sdCm1: 0.6 },
-      { shiftCm1: 1105.5, sdCm1: 0.27 },
-      { shiftCm1: 1168.5, sdCm1: 0.65 },
-      { shiftCm1: 1236.8, sdCm1: 0.46 },
-      { shiftCm1: 1278.5, sdCm1: 0.45 },
-      { shiftCm1: 1323.9, sdCm1: 0.46 },
-      { shiftCm1: 1371.5, sdCm1: 0.11 },
-      { shiftCm1: 1515.1, sdCm1: 0.7 },
-      { shiftCm1: 1561.6, sdCm1: 0.52 },
-      { shiftCm1: 1648.4, sdCm1: 0.5 },
-      { shiftCm1: 2931.1, sdCm1: 0.63, fromMemory: true },
-      { shiftCm1: 3064.6, sdCm1: 0.31, fromMemory: true },
-      { shiftCm1: 3102.4, sdCm1: 0.95, fromMemory: true },
-      { shiftCm1: 3326.6, sdCm1: 2.18, fromMemory: true }
+      ...rows([[213.3, 1.77]], recalled),
+      ...rows(
+        [
+          [329.2, 0.52],
+          [390.9, 0.76],
+          [465.1, 0.3],
+          [504, 0.6],
+          [651.6, 0.5],
+          [710.8, 0.68],
+          [797.2, 0.48],
+          [834.5, 0.46],
+          [857.9, 0.5],
+          [968.7, 0.6],
+          [1105.5, 0.27],
+          [1168.5, 0.65],
+          [1236.8, 0.46],
+          [1278.5, 0.45],
+          [1323.9, 0.46],
+          [1371.5, 0.11],
+          [1515.1, 0.7],
+          [1561.6, 0.52],
+          [1648.4, 0.5]
+        ],
+        published
+      ),
+      ...rows(
+        [
+          [2931.1, 0.63],
+          [3064.6, 0.31],
+          [3102.4, 0.95],
+          [3326.6, 2.18]
+        ],
+        recalled
+      )
     ]
   },
   {
     name: 'naphthalene',
-    source: 'ASTM E1840-96(2022) Table of Raman shift standards (7 laboratories)',
-    bands: [
-      { shiftCm1: 513.8, sdCm1: 0.31 },
-      { shiftCm1: 763.8, sdCm1: 0.31 },
-      { shiftCm1: 1021.6, sdCm1: 0.48 },
-      { shiftCm1: 1147.2, sdCm1: 0.34 },
-      { shiftCm1: 1382.2, sdCm1: 0.31 },
-      { shiftCm1: 1464.5, sdCm1: 0.3 },
-      { shiftCm1: 1576.6, sdCm1: 0.29 },
-      { shiftCm1: 3056.4, sdCm1: 0.33 }
-    ]
+    source: E1840,
+    bands: rows(
+      [
+        [513.8, 0.31],
+        [763.8, 0.31],
+        [1021.6, 0.48],
+        [1147.2, 0.34],
+        [1382.2, 0.31],
+        [1464.5, 0.3],
+        [1576.6, 0.29],
+        [3056.4, 0.33]
+      ],
+      published
+    )
   },
   {
     name: 'calcite',
     source: 'CEN CWA 18133:2024 Table 7 (as carried in an open research library)',
     bands: [
+      // Natural width of the strongest: Itoh, Appl. Spectrosc. 2025 (abstract).
       { shiftCm1: 155.21 },
       { shiftCm1: 281.26 },
       { shiftCm1: 711.95 },
-      { shiftCm1: 1085.91 },
+      { shiftCm1: 1085.91, naturalFwhmCm1: 1.36 },
       { shiftCm1: 1435.22 },
       { shiftCm1: 1748.91 }
     ]
@@ -106,46 +149,50 @@ export const findStandard = (name: string): PublishedStandard | undefined =>
 
 /** A set of allowed deviations offered as a starting point; the site confirms it against the chapter it works by. */
 export interface SuggestedTolerances {
-  readonly name: string;
+  readonly name: 'laboratory' | 'handheld';
   readonly standard: string;
   readonly source: string;
-  readonly bands: readonly { readonly shiftCm1: number; readonly toleranceCm1: number }[];
+  readonly bands: readonly BandTolerance[];
 }
 
+/** Only the three materials are confirmed; every figure below is from memory, with low confidence. */
 const CHAPTER = 'Ph. Eur. 2.2.48, from memory: confirm against the chapter you hold before use';
 
+/** Bands above 2000 cm-1 are left out: an axis that ends below them would fail for a band it cannot see. */
+const suggested = (
+  name: SuggestedTolerances['name'],
+  standard: string,
+  ...rows: readonly (readonly [number, number])[]
+): SuggestedTolerances => ({
+  name,
+  standard,
+  source: CHAPTER,
+  bands: rows.map(([shiftCm1, toleranceCm1]) => ({ shiftCm1, toleranceCm1 }))
+});
+
 export const SUGGESTED_TOLERANCES: readonly SuggestedTolerances[] = [
-  {
-    name: 'laboratory',
-    standard: 'polystyrene',
-    source: CHAPTER,
-    bands: [
-      { shiftCm1: 620.9, toleranceCm1: 1.5 },
-      { shiftCm1: 1001.4, toleranceCm1: 1.5 },
-      { shiftCm1: 1031.8, toleranceCm1: 1.5 },
-      { shiftCm1: 1602.3, toleranceCm1: 1.5 }
-    ]
-  },
-  {
-    name: 'handheld',
-    standard: 'polystyrene',
-    source: CHAPTER,
-    bands: [
-      { shiftCm1: 620.9, toleranceCm1: 2.5 },
-      { shiftCm1: 1001.4, toleranceCm1: 2.5 },
-      { shiftCm1: 1031.8, toleranceCm1: 2.5 },
-      { shiftCm1: 1602.3, toleranceCm1: 3 }
-    ]
-  },
-  {
-    name: 'laboratory',
-    standard: 'cyclohexane',
-    source: CHAPTER,
-    bands: [
-      { shiftCm1: 801.3, toleranceCm1: 1.5 },
-      { shiftCm1: 1028.3, toleranceCm1: 1 },
-      { shiftCm1: 1266.4, toleranceCm1: 1 },
-      { shiftCm1: 1444.4, toleranceCm1: 1 }
-    ]
-  }
+  suggested('laboratory', 'polystyrene', [620.9, 1.5], [1001.4, 1.5], [1031.8, 1.5], [1602.3, 1.5]),
+  suggested('handheld', 'polystyrene', [620.9, 2.5], [1001.4, 2.5], [1031.8, 2.5], [1602.3, 3]),
+  suggested('laboratory', 'cyclohexane', [801.3, 1.5], [1028.3, 1], [1266.4, 1], [1444.4, 1]),
+  suggested('handheld', 'cyclohexane', [801.3, 2.5], [1028.3, 2.5], [1266.4, 2.5], [1444.4, 2.5]),
+  suggested(
+    'laboratory',
+    '4-acetamidophenol',
+    [797.2, 1.5],
+    [857.9, 1.5],
+    [1168.5, 1.5],
+    [1236.8, 1.5],
+    [1323.9, 1.5],
+    [1648.4, 1.5]
+  ),
+  suggested(
+    'handheld',
+    '4-acetamidophenol',
+    [797.2, 2.5],
+    [857.9, 2.5],
+    [1168.5, 2.5],
+    [1236.8, 2.5],
+    [1323.9, 2.5],
+    [1648.4, 3]
+  )
 ];
