@@ -94,7 +94,7 @@ describe('a criterion is judged on the value as computed, not as shown', () => {
     ['q-residual', (q) => ({ q }), 0.5],
     ['unexplained-bands', (unexplained) => ({ unexplained }), 0.1],
     ['missing-bands', (missing) => ({ missing }), 0.2],
-    ['admixture', (admixture) => ({ admixture }), 0.08]
+    ['admixture', (admixture) => ({ admixture }), 0.06]
   ];
   it.each(distances)(
     '%s: at its limit met, just above near, up to half above near, beyond not met',

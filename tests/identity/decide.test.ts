@@ -25,7 +25,7 @@ let library: Library;
 beforeAll(() => {
   for (const { itemCode } of SUITABLE) methods.set(itemCode, madeMethod(itemCode));
   library = libraryOf([...methods.values()].map((made) => made.entry));
-});
+}, 60_000);
 
 const methodOf = (itemCode: string): MadeMethod => methods.get(itemCode) as MadeMethod;
 const request = (claimed: string, spectrum: Spectrum, more: Partial<DecideRequest> = {}) =>
@@ -72,7 +72,7 @@ describe('R-071: the decision is reproducible and the claim decides', () => {
       }
     }
     expect(accepted).toEqual([]);
-  });
+  }, 60_000);
 
   it('brightness and offset of a file move neither verdict nor score beyond rounding', () => {
     const scan = madeScan('SUC');

@@ -57,7 +57,7 @@ beforeAll(() => {
     console.log(`written: ${rows.length} golden decisions of engine ${ENGINE_VERSION}`);
   }
   golden = existsSync(FILE) ? (JSON.parse(readFileSync(FILE, 'utf8')) as GoldenFile) : null;
-});
+}, 60_000);
 
 function requestOf({ claimed, scanned, options, more }: GoldenCase): DecideRequest {
   const made = methods.get(claimed) as MadeMethod;

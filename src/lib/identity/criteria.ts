@@ -5,8 +5,8 @@ import type { MethodCriteria } from './method';
 /** A distance up to this many times its limit is near it: a person decides. */
 const DISTANCE_GUARD = 1.5;
 const BAND_GUARD = 1.5;
-/** Share of another material that is let pass where a method does not say. */
-const MAX_ADMIXTURE = 0.08;
+/** Share of another material that is let pass where a method does not say: a fifth of a weak scatterer shows as 0.08. */
+const MAX_ADMIXTURE = 0.06;
 const ADMIXTURE_GUARD = 1.5;
 /** Margins smaller than this, in units of the limit, mark a pass as near a limit. */
 const NEAR_LIMIT = 0.1;

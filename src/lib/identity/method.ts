@@ -32,7 +32,7 @@ export interface MethodCriteria {
   readonly minSignalToNoise: number;
   /** Largest unexplained band, as a fraction of the strongest reference band. */
   readonly maxUnexplainedBand: number;
-  /** Largest share of the signal that may look like one other material of the library; absent: 0.08. */
+  /** Largest share of the signal that may look like one other material of the library; absent: 0.06. */
   readonly maxAdmixture?: number;
 }
 
