@@ -20,3 +20,5 @@ export const SIGNATURE_ATTEMPTS = 3;
 /** Shortest and longest password (NIST SP 800-63B-4: at least 15 where it stands alone). */
 export const PASSWORD_MIN_LENGTH = 15;
 export const PASSWORD_MAX_LENGTH = 200;
+/** How long a link to set a password is good. */
+export const PASSWORD_LINK_MINUTES = 15;

@@ -36,6 +36,11 @@ export const REFUSALS = {
     title: 'The same key came with other content',
     next: 'Send the new content under a new key.'
   },
+  'link-spent': {
+    status: 410,
+    title: 'This link is no longer good',
+    next: 'Ask an administrator for a new link. It is good once, for 15 minutes.'
+  },
   'bad-input': {
     status: 422,
     title: 'Something in the form needs attention',

@@ -35,6 +35,7 @@ export const PERMISSIONS = {
   'scan.replay': ['method_owner', 'approver', 'auditor'],
   'repeat.request': ['operator'],
   'repeat.grant': ['approver'],
+  'role.grant': ['approver'],
   'review.read': ['approver', 'auditor'],
   'deviation.read': GMP,
   'deviation.open': ['operator', 'method_owner', 'approver'],

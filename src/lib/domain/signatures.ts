@@ -19,3 +19,7 @@ export const SIGNATURE_MEANING_NAMES: Readonly<Record<SignatureMeaning, string>>
   declined: 'I decline this',
   acknowledged: 'I have read and acknowledge this'
 };
+
+/** What a person accepts before their first signature (21 CFR 11.10(j)); the trail keeps it as it was accepted. */
+export const ACCOUNTABILITY_STATEMENT =
+  'My electronic signature in this system binds me as my handwritten one does. I sign only what I have seen, nobody else uses my password, and I answer for what is done under my name.';

@@ -72,11 +72,11 @@ async function forgetFailures(db: Executor, act: Act): Promise<null> {
 }
 
 async function countFailure(db: Executor, act: Act, account: Account): Promise<Refusal> {
-  const failures = await transact(db, async (tx) => {
+  const ended = await transact(db, async (tx) => {
     await recordRefusal(tx, act, account.id, 'Wrong password or one-time code at a signature');
-    return act.sessionKey ? countInSession(tx, act, act.sessionKey) : 0;
+    return act.sessionKey !== null && (await countInSession(tx, act, act.sessionKey, 'at a signature'));
   });
-  if (failures >= SIGNATURE_ATTEMPTS) {
+  if (ended) {
     return refuse(
       'not-signed-in',
       'The password was wrong for the third time, so you have been signed out. Nothing was signed.'
@@ -88,14 +88,20 @@ async function countFailure(db: Executor, act: Act, account: Account): Promise<R
   return refuse('signature-wrong', `${field}. Nothing was signed.`, { password: field });
 }
 
-async function countInSession(tx: Transaction, act: Act, sessionKey: string): Promise<number> {
+/** Counts a wrong password in a live session; the third ends it, and true is returned. */
+export async function countInSession(
+  tx: Transaction,
+  act: Act,
+  sessionKey: string,
+  where: string
+): Promise<boolean> {
   const [row] = await tx
     .update(sessions)
     .set({ failedSignatures: sql`${sessions.failedSignatures} + 1` })
     .where(eq(sessions.tokenHash, sessionKey))
     .returning({ failures: sessions.failedSignatures });
-  if (!row || row.failures < SIGNATURE_ATTEMPTS) return row?.failures ?? 0;
-  const why = `${SIGNATURE_ATTEMPTS} wrong passwords at a signature`;
+  if (!row || row.failures < SIGNATURE_ATTEMPTS) return false;
+  const why = `${SIGNATURE_ATTEMPTS} wrong passwords ${where}`;
   await tx
     .update(sessions)
     .set({ revokedAt: sql`clock_timestamp()`, revokedWhy: why })
@@ -107,7 +113,7 @@ async function countInSession(tx: Transaction, act: Act, sessionKey: string): Pr
     recordLabel: `Account ${act.actor.userName}`,
     reason: why
   });
-  return row.failures;
+  return true;
 }
 
 const recordRefusal = (db: Executor, act: Act, signerId: string, reason: string) =>

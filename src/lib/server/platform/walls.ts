@@ -39,7 +39,9 @@ const OTHERS = [
   ['users', 'check_user'],
   ['role_grants', 'check_grant'],
   ['deviations', 'check_deviation'],
-  ['repeat_requests', 'check_request']
+  ['repeat_requests', 'check_request'],
+  ['password_links', 'check_link'],
+  ['role_requests', 'check_request']
 ] as const;
 
 /**

@@ -1,5 +1,5 @@
 import { and, asc, eq, inArray, isNull, ne, sql } from 'drizzle-orm';
-import { can, type Actor } from '../../domain/roles';
+import { can, ROLE_NAMES, type Actor } from '../../domain/roles';
 import type { Executor } from '../db/client';
 import {
   containers,
@@ -12,6 +12,7 @@ import {
   repeatRequests
 } from '../db/schema';
 import { listInstruments } from './instruments';
+import { listWaitingRoles } from './roleGrants';
 
 /** One line of work waiting: what, since when, and where to do it. */
 export interface TallyLine {
@@ -22,7 +23,8 @@ export interface TallyLine {
     | 'repeat-granted'
     | 'check-due'
     | 'deviation-open'
-    | 'method-to-approve';
+    | 'method-to-approve'
+    | 'role-to-approve';
   readonly label: string;
   readonly detail: string;
   readonly href: string;
@@ -41,6 +43,7 @@ export async function listTally(db: Executor, actor: Actor & { siteId: string })
   if (can(actor, 'lot.release')) lines.push(...(await lotsToReview(db, actor.siteId)));
   if (can(actor, 'deviation.work')) lines.push(...(await deviationsOpen(db)));
   if (can(actor, 'method.approve')) lines.push(...(await methodsToApprove(db, actor.id)));
+  if (can(actor, 'role.grant')) lines.push(...(await rolesToApprove(db, actor)));
   return lines.sort((a, b) => a.since.getTime() - b.since.getTime());
 }
 
@@ -191,4 +194,17 @@ async function methodsToApprove(db: Executor, actorId: string): Promise<TallyLin
     href: `/methods/${row.id}`,
     since: row.since ?? row.createdAt
   }));
+}
+
+async function rolesToApprove(db: Executor, actor: Actor & { siteId: string }): Promise<TallyLine[]> {
+  const waiting = await listWaitingRoles(db, actor.siteId);
+  return waiting
+    .filter((row) => row.requestedBy !== actor.id && row.userId !== actor.id)
+    .map((row) => ({
+      kind: 'role-to-approve',
+      label: `${ROLE_NAMES[row.role]} for ${row.printedName}`,
+      detail: `Asked by ${row.requestedByName}: ${row.reason}`,
+      href: '/roles',
+      since: row.requestedAt
+    }));
 }

@@ -5,6 +5,7 @@ export * from './people';
 export * from './rawFiles';
 export * from './receipts';
 export * from './records';
+export * from './roleRequests';
 export * from './scans';
 export * from './signatures';
 export * from './trail';

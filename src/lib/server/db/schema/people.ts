@@ -129,6 +129,28 @@ export const sessions = pgTable(
   ]
 );
 
+/** A link with which a person sets their own password: used once, for a quarter of an hour. Holds no token, only its SHA-256. */
+export const passwordLinks = pgTable(
+  'password_links',
+  {
+    id: idKey(),
+    tokenHash: text().notNull().unique(),
+    userId: uuid()
+      .notNull()
+      .references(() => users.id, { onDelete: 'restrict' }),
+    /** The administrator who asked for it; null where the installation made it. */
+    createdBy: uuid().references(() => users.id, { onDelete: 'restrict' }),
+    createdAt: instant()
+      .notNull()
+      .default(sql`clock_timestamp()`),
+    expiresAt: instant().notNull(),
+    usedAt: instant(),
+    /** Set when a newer link took its place. */
+    withdrawnAt: instant()
+  },
+  (t) => [index('password_links_user').on(t.userId)]
+);
+
 /** Bearer token of an instrument PC: shown once, stored as a hash, revocable. */
 export const apiTokens = pgTable('api_tokens', {
   id: idKey(),
