@@ -72,9 +72,16 @@ describe('R-003, R-033: the table of routes and the routes themselves', () => {
       expect([room.href, ROUTE_RULES[`GET ${room.href}`]]).toEqual([room.href, room.action]);
   });
 
-  it('what is open to everybody is the door and the check of a certificate, and changes no record', () => {
+  it('what is open to everybody is the door, the link to set a password and the check of a certificate', () => {
     const open = Object.entries(ROUTE_RULES).flatMap(([key, rule]) => (rule === 'public' ? [key] : []));
-    expect(open.sort()).toEqual(['GET /signin', 'GET /verify/[code]', 'POST /signin', 'POST /signout']);
+    expect(open.sort()).toEqual([
+      'GET /password/[token]',
+      'GET /signin',
+      'GET /verify/[code]',
+      'POST /password/[token]',
+      'POST /signin',
+      'POST /signout'
+    ]);
   });
 });
 
