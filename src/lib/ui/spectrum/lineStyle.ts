@@ -12,6 +12,7 @@ const OTHER_DASHES = ['3 3', '10 3 2 3', '6 2', '2 5', '12 4'];
 
 /** The style of each line, in the lines' order. */
 export function lineStyles(lines: readonly ChartLine[]): LineStyle[] {
+  const few = lines.filter((line) => line.kind === 'other').length <= OTHER_DASHES.length;
   let others = 0;
   return lines.map((line) => {
     if (line.kind === 'scan')
@@ -19,7 +20,8 @@ export function lineStyles(lines: readonly ChartLine[]): LineStyle[] {
     if (line.kind === 'reference') {
       return { stroke: 'var(--rope)', ink: 'var(--rope-text)', dash: line.dash ?? '8 3', width: 1.9 };
     }
-    const dash = line.dash ?? OTHER_DASHES[others++ % OTHER_DASHES.length];
+    // Many lines cannot be told apart by dashes, which then only cost time.
+    const dash = line.dash ?? (few ? OTHER_DASHES[others++] : undefined);
     return { stroke: 'var(--logwood)', ink: 'var(--logwood)', dash, width: 1.5 };
   });
 }
