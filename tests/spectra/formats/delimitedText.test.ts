@@ -1,7 +1,7 @@
 import '../../support/fixedSeed';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { decimalEnd, readDecimal } from '$lib/spectra/formats/decimal';
+import { COMMA, DecimalReader, POINT } from '$lib/spectra/formats/decimal';
 import { MAX_FILE_BYTES } from '$lib/spectra/formats/textOf';
 import { readSpectrumFile } from '$lib/spectra/formats/formats';
 
@@ -127,10 +127,11 @@ describe('R-059: a file is read whole or refused whole', () => {
 });
 
 describe('numbers are those of the language, to the last bit', () => {
-  const isSame = (text: string, mark = 0x2e) => {
-    const input = bytes(mark === 0x2c ? text.replace('.', ',') : text);
-    expect(readDecimal(input, 0, input.length, mark)).toBe(Number(text));
-    expect(decimalEnd).toBe(input.length);
+  const isSame = (text: string, mark = POINT) => {
+    const input = bytes(mark === COMMA ? text.replace('.', ',') : text);
+    const reader = new DecimalReader(input, mark);
+    expect(reader.read(0, input.length)).toBe(Number(text));
+    expect(reader.end).toBe(input.length);
   };
   test('of every magnitude', () => {
     fc.assert(
@@ -139,7 +140,7 @@ describe('numbers are those of the language, to the last bit', () => {
     );
     fc.assert(
       fc.property(fc.integer({ min: -1e9, max: 1e9 }), fc.integer({ min: 0, max: 12 }), (value, places) =>
-        isSame((value / 1000).toFixed(places), 0x2c)
+        isSame((value / 1000).toFixed(places), COMMA)
       ),
       { numRuns: 2000 }
     );

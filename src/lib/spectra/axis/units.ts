@@ -7,6 +7,15 @@
 export const shiftFromWavelength = (excitationNm: number, wavelengthNm: number): number =>
   1e7 / excitationNm - 1e7 / wavelengthNm;
 
-/** Wavelength (nm) at which light of this shift (cm-1) is found; the inverse of the above. */
+/**
+ * Wavelength (nm) at which light of this shift (cm-1) is found; the inverse of the above. The anti-Stokes twin of a
+ * band lies at the wavelength of its negative shift.
+ */
 export const wavelengthFromShift = (excitationNm: number, shiftCm1: number): number =>
   1e7 / (1e7 / excitationNm - shiftCm1);
+
+/** Units in which a file may give its axis. */
+export type AxisUnit = 'cm-1' | 'nm' | 'um';
+
+/** Excitation wavelengths (nm) taken as sane: near ultraviolet to near infrared. Anything else is a misread number. */
+export const isExcitationNm = (value: number): boolean => value >= 200 && value <= 2000;

@@ -1,87 +1,94 @@
+import type { AxisUnit } from '../axis/units';
+import { axisUnitOf, isForeignAxis } from './axisUnit';
+import type { DelimitedHead } from './delimitedHead';
 import type { Layout } from './delimitedLayout';
-import { splitCells } from './delimitedLayout';
 import type { ReadOptions, ReadProblem } from './format';
 
 export interface ChosenColumns {
   /** Zero-based. */
   readonly axis: number;
   readonly intensity: number;
-  readonly unit: 'cm-1' | 'nm';
+  readonly unit: AxisUnit;
+  /** False when neither the file nor the user named the unit. */
+  readonly unitStated: boolean;
   readonly notes: readonly string[];
 }
 
-const SHIFT_WORDS = /raman|shift|cm-1|cm\^-1|cm\(-1\)|1\/cm|wave ?number/i;
-const WAVELENGTH_WORDS = /wavelength|\bnm\b|lambda/i;
+type Refused = { readonly problem: ReadProblem };
 
-/** Chooses axis and intensity columns from the column titles, else the first two; says so in words. */
+/**
+ * Chooses axis and intensity among the columns of numbers. The axis is the column whose title says Raman shift or
+ * wavenumber, else wavelength, else the first one; the intensity the first column after it whose title says intensity,
+ * counts or signal, else the next column. What was chosen is told; the user may overrule each choice.
+ */
 export function chooseColumns(
   layout: Layout,
-  head: string,
+  head: DelimitedHead,
   options: ReadOptions
-): ChosenColumns | { readonly problem: ReadProblem } {
-  const titles = titlesOf(layout, head);
-  const axis = options.axisColumn ?? titledAxis(titles) ?? 0;
-  const intensity = options.intensityColumn ?? (axis === 0 ? 1 : 0);
-  for (const column of [axis, intensity]) {
-    if (column >= layout.columnCount) {
-      return {
-        problem: {
-          code: 'no-data',
-          message: `The file has ${layout.columnCount} columns; column ${column + 1} does not exist. Choose another column.`
-        }
-      };
-    }
+): ChosenColumns | Refused {
+  const { titles } = head;
+  const numeric = layout.numeric.flatMap((is, column) => (is ? [column] : []));
+  const axis = options.axisColumn ?? axisAmong(numeric, titles);
+  const intensity = options.intensityColumn ?? intensityAmong(numeric, titles, axis);
+  const missing = [axis, intensity].find((column) => column >= layout.columnCount);
+  if (missing !== undefined)
+    return noData(
+      `The file has ${layout.columnCount} columns; column ${missing + 1} does not exist. Choose another column.`
+    );
+  if (axis === intensity) return noData('Axis and intensity cannot be the same column. Choose two columns.');
+  const title = titles[axis] ?? '';
+  const found = options.axisUnit ?? axisUnitOf(title) ?? head.axisUnit;
+  if (!found && isForeignAxis(title)) {
+    const message = `Column ${axis + 1} is called "${title.slice(0, 60)}", which is no Raman shift and no wavelength. Choose the column of the axis, or export the spectrum with its axis in cm-1.`;
+    return { problem: { code: 'unit-unknown', message } };
   }
-  if (axis === intensity)
-    return {
-      problem: {
-        code: 'no-data',
-        message: 'Axis and intensity cannot be the same column. Choose two columns.'
-      }
-    };
-  const unit = options.axisUnit ?? unitOf(titles[axis] ?? '', head);
-  const name = (column: number) =>
-    titles[column] ? `column ${column + 1} ("${titles[column].slice(0, 60)}")` : `column ${column + 1}`;
-  const what = unit === 'nm' ? 'wavelength in nm' : 'Raman shift in cm-1';
-  const notes = [`${capital(name(axis))} was taken as ${what}, ${name(intensity)} as intensity.`];
+  const unit = found ?? 'cm-1';
+  const notes = [
+    `${nameOf(axis, titles, 'Column')} was taken as ${WHAT[unit]}, ${nameOf(intensity, titles, 'column')} as intensity.`
+  ];
   const others = layout.columnCount - 2;
   if (others > 0) notes.push(`${others} other ${others === 1 ? 'column was' : 'columns were'} not used.`);
-  if (
-    !options.axisUnit &&
-    unit === 'cm-1' &&
-    !SHIFT_WORDS.test(titles[axis] ?? '') &&
-    !SHIFT_WORDS.test(head)
-  ) {
-    notes.push('The file does not state the unit of its axis; cm-1 was assumed.');
+  return { axis, intensity, unit, unitStated: found !== null, notes };
+}
+
+const WHAT: Readonly<Record<AxisUnit, string>> = {
+  'cm-1': 'Raman shift in cm-1',
+  nm: 'wavelength in nm',
+  um: 'wavelength in micrometers'
+};
+
+const noData = (message: string): Refused => ({ problem: { code: 'no-data', message } });
+
+const nameOf = (column: number, titles: readonly string[], word: string): string =>
+  titles[column] ? `${word} ${column + 1} ("${titles[column].slice(0, 60)}")` : `${word} ${column + 1}`;
+
+/** Titles of counts that number the points and measure nothing. */
+const isCounter = (title: string): boolean =>
+  /^(pixel|index|point|number|no\.?|#|n|i)s?$/i.test(title.trim());
+
+function axisAmong(numeric: readonly number[], titles: readonly string[]): number {
+  const units = numeric.map((column) => axisUnitOf(titles[column] ?? ''));
+  for (const unit of ['cm-1', 'nm', 'um'] as const) {
+    const found = units.indexOf(unit);
+    if (found >= 0) return numeric[found];
   }
-  return { axis, intensity, unit, notes };
+  return (
+    (numeric.length > 2 ? numeric.find((column) => !isCounter(titles[column] ?? '')) : undefined) ??
+    numeric[0]
+  );
 }
 
-const capital = (text: string) => text.replace(/^./, (first) => first.toUpperCase());
-
-/** Titles in the last header line, when it has as many cells as there are columns. */
-function titlesOf(layout: Layout, head: string): string[] {
-  const last = head
-    .split(/\r\n|\r|\n/)
-    .filter((line) => line.trim() !== '')
-    .pop();
-  if (last === undefined) return [];
-  const bare = last.replace(/^\s{0,100}(#|%|;|\/\/)/, '');
-  const cells = splitCells(bare, String.fromCharCode(layout.delimiter));
-  return cells.length === layout.columnCount ? cells : [];
-}
-
-function titledAxis(titles: readonly string[]): number | undefined {
-  const shift = titles.findIndex((title) => SHIFT_WORDS.test(title));
-  if (shift >= 0) return shift;
-  const wavelength = titles.findIndex((title) => WAVELENGTH_WORDS.test(title));
-  return wavelength >= 0 ? wavelength : undefined;
-}
-
-function unitOf(title: string, head: string): 'cm-1' | 'nm' {
-  if (SHIFT_WORDS.test(title)) return 'cm-1';
-  if (WAVELENGTH_WORDS.test(title)) return 'nm';
-  return /(^|\n)[#%; ]{0,10}(x ?units?|axis ?unit)s?\s{0,10}[:=]\s{0,10}(nm|nanomet)/i.test(head)
-    ? 'nm'
-    : 'cm-1';
+function intensityAmong(numeric: readonly number[], titles: readonly string[], axis: number): number {
+  const able = numeric.filter(
+    (column) =>
+      column !== axis && axisUnitOf(titles[column] ?? '') === null && !isCounter(titles[column] ?? '')
+  );
+  const called = able.find((column) => /intens|counts|signal/i.test(titles[column] ?? ''));
+  return (
+    called ??
+    able.find((column) => column > axis) ??
+    able[0] ??
+    numeric.find((column) => column !== axis) ??
+    axis
+  );
 }

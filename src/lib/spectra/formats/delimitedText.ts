@@ -1,15 +1,27 @@
-import { latin1 } from './textOf';
-import { chooseColumns } from './delimitedColumns';
+import { thousandsProblem } from './decimalComma';
+import { chooseColumns, type ChosenColumns } from './delimitedColumns';
+import { headOf, type DelimitedHead } from './delimitedHead';
 import { layoutOf, type Layout } from './delimitedLayout';
-import { acquisitionOf } from './delimitedMetadata';
-import { readRows } from './delimitedRows';
+import { lineOfRow, readRows, type Rows } from './delimitedRows';
+import { excitationOf, finishAxis } from './finishAxis';
 import type { ReadOptions, ReadOutcome, ReadProblem, SpectrumFormat } from './format';
-import { finishAxis } from './finishAxis';
+import { MIN_POINTS } from '../spectrum';
+import { firstTurn, turnProblem } from './oneWay';
+import { wavelengthNote } from './wavelengthNote';
 
 /**
- * Delimited text: one point a line, columns split by comma, semicolon, tab, pipe or spaces; decimal point or
- * decimal comma; before the numbers any lines of comment (`#`, `%`, `;`, `//`), metadata (`name: value`,
- * `name=value`) and column titles. What was taken for what is told in the notes and can be overridden.
+ * Delimited text: the specification of what is read.
+ *
+ * - One point a line; columns split by tab, semicolon, vertical bar, comma or spaces; decimal point or decimal comma;
+ *   cells may stand in double quotes. Thousands are not split. How these are found: delimitedLayout.ts.
+ * - Before the numbers any lines of comment (`#`, `%`, `;`, `//`), of the measurement (`Laser wavelength: 785 nm`,
+ *   `Integration time (ms);2000`, `Accumulations = 3`, `Serial number`; statedFields.ts) and titles of columns.
+ * - The columns are chosen by their titles, else the first two (delimitedColumns.ts). The unit of the axis is that of
+ *   its title, else of an `X units` line, else cm-1 with a note. nm and micrometers need the excitation wavelength.
+ * - From the first row of numbers on every line is a row, with the columns of the first one and numbers in both that
+ *   are read. Any other line, an axis that turns back or repeats a value, a count that a `Number of points` line
+ *   contradicts: the whole file is refused, with the line. Only lines of words at the very end are passed over, and
+ *   told. An axis from high to low is turned round, and told.
  *
  * Example:
  *
@@ -18,56 +30,60 @@ import { finishAxis } from './finishAxis';
  *     200,0;1534,2
  *     201,0;1533,9
  *
- * reads as semicolon-delimited with decimal comma; column 1 is the Raman shift, column 2 the intensity. Once the
- * numbers have begun, a line that is not numbers is an error with its line number: nothing is skipped silently.
+ * reads as split by semicolon with decimal comma; column 1 is the Raman shift 200, 201, column 2 the intensity 1534.2,
+ * 1533.9 (with 14 more rows: a spectrum has at least 16 points).
  */
 export const delimitedText: SpectrumFormat = {
   name: 'delimited-text',
-  sniff: () => true,
+  sniff: (head) => {
+    const first = head.find((byte) => byte > 0x20) ?? 0;
+    return !'<{['.includes(String.fromCharCode(first));
+  },
   read: (bytes, options) => {
     const layout = layoutOf(bytes, options);
     if ('problem' in layout) return { ok: false, problem: layout.problem };
-    return readLaidOut(bytes, layout, options);
+    const head = headOf(bytes, layout);
+    const columns = chooseColumns(layout, head, options);
+    if ('problem' in columns) return { ok: false, problem: columns.problem };
+    const rows = readRows(bytes, layout, columns.axis, columns.intensity);
+    if ('problem' in rows) return { ok: false, problem: rows.problem };
+    const fault = rowsFault(bytes, layout, head, rows) ?? thousandsProblem(bytes, layout, options);
+    return fault ? { ok: false, problem: fault } : spectrumOf(rows, layout, head, columns, options);
   }
 };
 
-function readLaidOut(bytes: Uint8Array, layout: Layout, options: ReadOptions): ReadOutcome {
-  const head = latin1(bytes, 0, layout.dataStart);
-  const columns = chooseColumns(layout, head, options);
-  if ('problem' in columns) return { ok: false, problem: columns.problem };
-  const rows = readRows(bytes, layout, columns.axis, columns.intensity);
-  if ('problem' in rows) return { ok: false, problem: rows.problem };
-  const acquisition = acquisitionOf(head, options.excitationNm);
-  const notes = [...layout.notes, ...columns.notes];
-  const finished = finishAxis(
-    rows.x,
-    rows.y,
-    columns.unit,
-    options.excitationNm ?? acquisition.excitationNm,
-    notes
-  );
-  if ('problem' in finished) return { ok: false, problem: finished.problem };
-  const repeated = duplicateProblem(rows.x, rows.lines);
-  if (repeated) return { ok: false, problem: repeated };
-  return { ok: true, format: 'delimited-text', spectrum: finished.spectrum, acquisition, notes };
+function rowsFault(bytes: Uint8Array, layout: Layout, head: DelimitedHead, { x }: Rows): ReadProblem | null {
+  if (head.points !== undefined && head.points !== x.length) {
+    const message = `The file says ${head.points} points but holds ${x.length}. It is cut short or damaged; export it again.`;
+    return { code: 'count-mismatch', message };
+  }
+  if (x.length < 4 && layout.numeric.filter(Boolean).length >= MIN_POINTS) {
+    const message = `The file has ${x.length} rows of ${layout.columnCount} numbers: the spectrum seems to lie in rows. Export it in columns.`;
+    return { code: 'no-data', message };
+  }
+  const turn = firstTurn(x);
+  return turn < 0 ? null : turnProblem(x, turn, lineOfRow(bytes, layout, turn));
 }
 
-/** The axis must go one way; the line where it stops doing so is named. */
-function duplicateProblem(x: Float64Array, lines: Uint32Array): ReadProblem | null {
-  const down = x.length > 1 && x[x.length - 1] < x[0];
-  for (let i = 1; i < x.length; i++) {
-    if (x[i] === x[i - 1])
-      return {
-        code: 'spectrum-fault',
-        line: lines[i],
-        message: `The axis value ${x[i]} stands there twice. Export the spectrum again.`
-      };
-    if (x[i] < x[i - 1] !== down)
-      return {
-        code: 'spectrum-fault',
-        line: lines[i],
-        message: `The axis turns back at ${x[i]}. Export a single spectrum.`
-      };
-  }
-  return null;
+function spectrumOf(
+  rows: Rows,
+  layout: Layout,
+  head: DelimitedHead,
+  columns: ChosenColumns,
+  options: ReadOptions
+): ReadOutcome {
+  const notes = [...layout.notes, ...columns.notes];
+  const excitation = excitationOf({ stated: head.acquisition.excitationNm, given: options.excitationNm });
+  if ('problem' in excitation) return { ok: false, problem: excitation.problem };
+  if (!columns.unitStated) notes.push(...wavelengthNote(rows.x, excitation.nm));
+  const finished = finishAxis(rows.x, rows.y, columns.unit, excitation.nm, notes);
+  if ('problem' in finished) return { ok: false, problem: finished.problem };
+  const { footerLines } = rows;
+  if (footerLines > 0)
+    notes.push(
+      `${footerLines} ${footerLines === 1 ? 'line of words after the numbers was' : 'lines of words after the numbers were'} not read.`
+    );
+  const acquisition =
+    excitation.nm === undefined ? head.acquisition : { ...head.acquisition, excitationNm: excitation.nm };
+  return { ok: true, format: 'delimited-text', spectrum: finished.spectrum, acquisition, notes };
 }

@@ -1,132 +1,132 @@
-import { acquisitionOfBlock } from './jcampAcquisition';
-import { blocksOf, labelledRecords, numberOf, valueOf, type Block, type LabelledRecord } from './jcampLabels';
-import { readPairs, readTable } from './jcampData';
+import type { AxisUnit } from '../axis/units';
+import { axisUnitOf } from './axisUnit';
+import { excitationOf, finishAxis } from './finishAxis';
 import type { ReadOptions, ReadOutcome, ReadProblem, SpectrumFormat } from './format';
-import { finishAxis } from './finishAxis';
-import { latin1 } from './textOf';
+import { chooseBlock, type ChosenBlock } from './jcampBlocks';
+import { headerOf, type JcampHeader } from './jcampHeader';
+import { blocksOf, labelledRecords, problemAt, recordOf } from './jcampLabels';
+import { pointsOf, type DataForm } from './jcampPoints';
+import { jcampNotes } from './jcampNotes';
+import { StatedFields } from './statedFields';
 
 /**
- * JCAMP-DX 4.24 (McDonald & Wilks, Appl. Spectrosc. 42:151, 1988) and 5.01 (Lampen et al., Pure Appl. Chem.
- * 71:1549, 1999): labelled records, one or several blocks, data as `##XYDATA= (X++(Y..Y))` in any ASDF form
- * (jcampAsdf.ts), `##XYPOINTS=`/`##PEAKTABLE=` pairs, or the first page of `##NTUPLES=`.
+ * JCAMP-DX 4.24 (McDonald & Wilks, Appl. Spectrosc. 42:151, 1988) and 5.01 (Lampen et al., Pure Appl. Chem. 71:1549,
+ * 1999): the specification of what is read.
  *
- * Ordinates are multiplied by YFACTOR. Abscissae run in equal steps from FIRSTX to LASTX over NPOINTS; the
- * abscissa at each line's start, times XFACTOR, must lie where that says, and the number of points must agree.
+ * - A file is labelled records `##LABEL= value`, each at the beginning of a line; labels are compared in capitals
+ *   without spaces, hyphens, underscores and slashes. `$$` begins a comment. Lines end in CR, LF or both.
+ * - A block runs from ##TITLE to ##END. Of several blocks with a spectrum one must be chosen (`block`). A missing
+ *   ##END is a note while NPOINTS proves the table whole, else a refusal.
+ * - Data: `##XYDATA= (X++(Y..Y))` in AFFN, PAC, SQZ, DIF, DUP and any mixture, with check values (jcampAsdf.ts);
+ *   `##XYDATA=` or `##XYPOINTS= (XY..XY)` as pairs; of `##NTUPLES=` the first `##DATA TABLE=` in either form. A table
+ *   of peaks is no spectrum. A `?` for a missing ordinate is a refusal.
+ * - Ordinates are multiplied by YFACTOR, abscissae by XFACTOR. The even axis runs from FIRSTX to LASTX over NPOINTS
+ *   (else by DELTAX, else by the lines' abscissae). NPOINTS, DELTAX and the abscissa of every line must agree with it
+ *   (jcampAxis.ts); of pairs, FIRSTX and LASTX with the ends. FIRSTY, MINY, MAXY that disagree are notes.
+ * - XUNITS: 1/CM or other words for it, taken as Raman shift, also where the label is missing (with a note);
+ *   NANOMETERS or MICROMETERS with the excitation wavelength from the file (##RAMAN EXCITATION, ##EXCITATION
+ *   WAVELENGTH, ##LASER WAVELENGTH, also as ##$ or ##. labels) or from the user. Anything else is refused.
  *
  * Example:
  *
- *     ##TITLE= example
- *     ##JCAMP-DX= 4.24
+ *     ##TITLE= worked example
+ *     ##JCAMP-DX= 4.24 $$ a comment
+ *     ##DATA TYPE= RAMAN SPECTRUM
  *     ##XUNITS= 1/CM
  *     ##FIRSTX= 400
- *     ##LASTX= 403
- *     ##NPOINTS= 4
- *     ##XFACTOR= 1
+ *     ##LASTX= 430
+ *     ##NPOINTS= 16
  *     ##YFACTOR= 0.5
  *     ##XYDATA= (X++(Y..Y))
- *     400A0J2
- *     402B4%
+ *     400A0J2%TK1k
+ *     410D1j1X
+ *     422b5+3+4.5E1A
  *     ##END=
  *
- * reads as shifts 400, 401, 402, 403 with intensities 5, 11 (10 + 12 = 22), 12 and 12; the SQZ value 24 repeats
- * no ordinate here because the first line's last form is DIF: its check value must be 22, so this file is refused
- * on line 10, and a sound one has `402B2...` there.
+ * reads as shifts 400, 402 ... 430. The first line is 10, 22, 22, 22 (`T`: the zero difference twice in all), 43, 41;
+ * it ends in DIF form, so the second begins with the check value 41, then 30, 19, 8, -3, -14, -25 (-11 six times in
+ * all); the third confirms -25 and adds 3, 4.5, 51 (`E1`), 1. Times 0.5 the intensities are 5, 11, 11, 11, 21.5, 20.5,
+ * 15, 9.5, 4, -1.5, -7, -12.5, 1.5, 2.25, 25.5, 0.5.
  */
 export const jcampDx: SpectrumFormat = {
   name: 'jcamp-dx',
-  sniff: (head) => /^\s{0,200}(\$\$[^\n]{0,500}\n\s{0,50}){0,20}##\s{0,10}[A-Za-z.$]/.test(latin1(head)),
+  sniff: (head) => {
+    const found = labelledRecords(head);
+    if ('problem' in found) return true;
+    return found.records.some(
+      ({ label, at }) => TELLING.has(label) || (label === 'TITLE' && head[at + 2] !== 0x20)
+    );
+  },
   read: (bytes, options) => {
-    const blocks = blocksOf(labelledRecords(bytes));
-    const chosen = chooseBlock(blocks, options);
-    return 'problem' in chosen
-      ? { ok: false, problem: chosen.problem }
-      : readBlock(bytes, chosen.block, chosen.notes, options);
+    const found = labelledRecords(bytes);
+    if ('problem' in found) return { ok: false, problem: found.problem };
+    const chosen = chooseBlock(bytes, blocksOf(found.records), options);
+    if ('problem' in chosen) return { ok: false, problem: chosen.problem };
+    const form = dataForm(bytes, chosen);
+    return 'problem' in form ? { ok: false, problem: form.problem } : readBlock(bytes, chosen, form, options);
   }
 };
 
-const DATA_LABELS = ['XYDATA', 'XYPOINTS', 'PEAKTABLE', 'DATATABLE'];
-const dataRecord = (block: Block): LabelledRecord | undefined =>
-  block.records.find((record) => DATA_LABELS.includes(record.label));
+/** Labels that no other kind of file has at the beginning of a line behind `##`. */
+const TELLING = new Set(
+  'JCAMPDX DATATYPE DATACLASS XUNITS YUNITS FIRSTX LASTX DELTAX NPOINTS XFACTOR YFACTOR XYDATA XYPOINTS NTUPLES'.split(
+    ' '
+  )
+);
 
-function chooseBlock(
-  blocks: readonly Block[],
+/** The form of a data table: `(X++(Y..Y))` or `(XY..XY)`, with its symbols; the last bracket is often forgotten. */
+function dataForm(bytes: Uint8Array, { data }: ChosenBlock): DataForm | { readonly problem: ReadProblem } {
+  const text = data.value.slice(0, 100).replaceAll(/\s/g, '').toUpperCase();
+  const table = /^\(([A-Z])\+\+\(([A-Z])\.\.\2\)/.exec(text);
+  if (table) return { even: true, x: table[1], y: table[2] };
+  const pairs = /^\(([A-Z])([A-Z])\.\.\1\2\)/.exec(text);
+  if (pairs) return { even: false, x: pairs[1], y: pairs[2] };
+  const message = `The data are in the form "${data.value.slice(0, 40)}", which is not read. Export the spectrum as (X++(Y..Y)) or (XY..XY).`;
+  return problemAt(bytes, data, 'syntax', message);
+}
+
+function readBlock(
+  bytes: Uint8Array,
+  chosen: ChosenBlock,
+  form: DataForm,
   options: ReadOptions
-): { block: Block; notes: string[] } | { problem: ReadProblem } {
-  const withData = blocks.filter((block) => dataRecord(block) !== undefined);
-  if (withData.length === 0)
-    return {
-      problem: {
-        code: 'no-data',
-        message: 'The file holds no spectrum (no XYDATA, XYPOINTS or NTUPLES). Export the spectrum itself.'
-      }
-    };
-  if (options.block !== undefined) {
-    const block = withData[options.block];
-    if (!block)
-      return {
-        problem: {
-          code: 'choice-needed',
-          message: `The file has ${withData.length} spectra; choose one of them.`,
-          choices: titles(withData)
-        }
-      };
-    return {
-      block,
-      notes: [`Spectrum ${options.block + 1} of ${withData.length} in the file was taken, as chosen.`]
-    };
+): ReadOutcome {
+  const refused = ({ problem }: { problem: ReadProblem }): ReadOutcome => ({ ok: false, problem });
+  const { block, notes } = chosen;
+  const found = headerOf(bytes, block, form);
+  if ('problem' in found) return refused(found);
+  const unit = unitOf(bytes, found.header, options, notes);
+  if ('problem' in unit) return refused(unit);
+  const points = pointsOf(bytes, chosen, form, found.header);
+  if ('problem' in points) return refused(points);
+  const fields = new StatedFields({
+    resolutionCm1: unit.unit === 'cm-1' ? 'cm-1' : undefined,
+    excitationNm: 'nm'
+  });
+  for (const { label, value } of block.records) fields.add(label.replace(/^[$.]/, ''), value);
+  const acquisition = fields.acquisition();
+  const excitation = excitationOf({ stated: acquisition.excitationNm, given: options.excitationNm });
+  if ('problem' in excitation) return refused(excitation);
+  const finished = finishAxis(points.x, points.y, unit.unit, excitation.nm, notes);
+  if ('problem' in finished) return refused(finished);
+  notes.push(...jcampNotes(bytes, chosen, found.header, points.y));
+  const used = excitation.nm === undefined ? acquisition : { ...acquisition, excitationNm: excitation.nm };
+  return { ok: true, format: 'jcamp-dx', spectrum: finished.spectrum, acquisition: used, notes };
+}
+
+function unitOf(
+  bytes: Uint8Array,
+  { xUnits }: JcampHeader,
+  options: ReadOptions,
+  notes: string[]
+): { readonly unit: AxisUnit } | { readonly problem: ReadProblem } {
+  if (options.axisUnit) return { unit: options.axisUnit };
+  if (!xUnits) {
+    notes.push('The file does not state the unit of its axis; Raman shift in cm-1 was assumed.');
+    return { unit: 'cm-1' };
   }
-  if (withData.length > 1) {
-    return {
-      problem: {
-        code: 'choice-needed',
-        message: `The file holds ${withData.length} spectra. Choose which one to read.`,
-        choices: titles(withData)
-      }
-    };
-  }
-  return {
-    block: withData[0],
-    notes: withData[0].ended ? [] : ['The file has no closing ##END=; nothing after the data was missed.']
-  };
-}
-
-const titles = (blocks: readonly Block[]) => blocks.map((block, i) => block.title || `Spectrum ${i + 1}`);
-
-function readBlock(bytes: Uint8Array, block: Block, notes: string[], options: ReadOptions): ReadOutcome {
-  const record = dataRecord(block) as LabelledRecord;
-  const unit = options.axisUnit ?? unitOf(block);
-  if (typeof unit === 'object') return { ok: false, problem: unit };
-  const data = /\+\+/.test(record.value)
-    ? readTable(bytes, block, record, notes)
-    : readPairs(bytes, block, record);
-  if ('problem' in data) return { ok: false, problem: data.problem };
-  const acquisition = acquisitionOfBlock(block, options.excitationNm);
-  const finished = finishAxis(data.x, data.y, unit, options.excitationNm ?? acquisition.excitationNm, notes);
-  if ('problem' in finished) return { ok: false, problem: finished.problem };
-  noteExtremes(block, data.y, notes);
-  return { ok: true, format: 'jcamp-dx', spectrum: finished.spectrum, acquisition, notes };
-}
-
-function unitOf(block: Block): 'cm-1' | 'nm' | ReadProblem {
-  const text = (valueOf(block, 'XUNITS') ?? valueOf(block, 'UNITS')?.split(',')[0] ?? '')
-    .trim()
-    .toUpperCase();
-  if (text === '' || /1\/CM|CM-1|CM\^-1|RAMAN|WAVENUMBER|ARBITRARY/.test(text)) return 'cm-1';
-  if (/NANOMET|^NM$/.test(text)) return 'nm';
-  const line = block.records.find((record) => record.label === 'XUNITS')?.line;
-  return {
-    code: 'unit-unknown',
-    line,
-    message: `The axis is in "${text.slice(0, 40)}", which is no Raman shift. Export the spectrum with its axis in cm-1 or nm.`
-  };
-}
-
-/** MAXY and MINY often disagree with the data in files of the field: told, not refused. */
-function noteExtremes(block: Block, y: Float64Array, notes: string[]): void {
-  const stated = numberOf(block, 'MAXY');
-  if (stated === undefined) return;
-  let highest = -Infinity;
-  for (const value of y) highest = Math.max(highest, value);
-  if (Math.abs(stated - highest) > 1e-3 * Math.max(1e-12, Math.abs(highest)))
-    notes.push(`MAXY says ${stated}, the largest ordinate is ${highest}.`);
+  const unit = axisUnitOf(xUnits.text);
+  if (unit) return { unit };
+  const message = `The axis is in "${xUnits.text.slice(0, 40)}", which is no Raman shift. Export the spectrum with its axis in cm-1 or nm.`;
+  return problemAt(bytes, xUnits.record, 'unit-unknown', message);
 }
