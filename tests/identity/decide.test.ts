@@ -74,6 +74,22 @@ describe('R-071: the decision is reproducible and the claim decides', () => {
     expect(accepted).toEqual([]);
   }, 60_000);
 
+  it('a first material is decided without any other to compare with, or with none whose axis reaches as far', () => {
+    const first = methodOf('PAR');
+    const short = methodOf('CAF').entry;
+    const cut = {
+      shiftCm1: short.spectrum.shiftCm1.slice(0, 500),
+      intensity: short.spectrum.intensity.slice(0, 500)
+    };
+    for (const others of [[], [{ ...short, spectrum: cut }]]) {
+      const alone = libraryOf([first.entry, ...others]);
+      const genuine = decide(requestFor(first, alone, asFile(madeScan('PAR'))));
+      expect([genuine.verdict, genuine.scores?.bestRivalCorrelation]).toEqual(['pass', null]);
+      expect(genuine.criteria.some((criterion) => criterion.code === 'best-match')).toBe(false);
+      expect(decide(requestFor(first, alone, asFile(madeScan('SUC')))).verdict).toBe('fail');
+    }
+  });
+
   it('brightness and offset of a file move neither verdict nor score beyond rounding', () => {
     const scan = madeScan('SUC');
     const base = under('SUC', scan);

@@ -32,6 +32,8 @@ const NOISE_MULTIPLE = 4;
 
 export function rivalsOutside(matrix: RivalMatrix, { model, along }: ClassAtWidth): RivalsOutside {
   const outside = new Float64Array(matrix.count).fill(1);
+  // A first material has no rival: an empty matrix has no row length either.
+  if (matrix.count === 0) return { outside, alongMean: new Float64Array(0) };
   for (const direction of [...model.loadings, along]) {
     const dots = interleavedDots(matrix, direction);
     for (let k = 0; k < outside.length; k++) outside[k] -= dots[k] * dots[k];
