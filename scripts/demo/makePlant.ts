@@ -22,7 +22,16 @@ import { loadLabelledReferences } from '../../src/lib/server/queries/references'
 import { makePeople } from './makePeople';
 import { must } from './must';
 import { readLiner, readMaterials, readPolystyrene, type DemoMaterial } from './materials';
-import { DRIFT_CM1, INSTRUMENTS, MANUFACTURERS, PEOPLE, SITE, sourceOf, SUPPLIERS } from './scenario';
+import {
+  DRIFT_CM1,
+  INSTRUMENTS,
+  MANUFACTURERS,
+  PEOPLE,
+  REFERENCE_INSTRUMENTS,
+  SITE,
+  sourceOf,
+  SUPPLIERS
+} from './scenario';
 import { synthesise, toDelimitedText, toJcampDx } from './synthesise';
 
 export interface Plant {
@@ -178,7 +187,7 @@ async function makeReferences(
   const owner = plant.acts[OWNER];
   for (let lot = 1; lot <= LOTS_PER_MATERIAL; lot++) {
     for (let scan = 1; scan <= SCANS_PER_LOT; scan++) {
-      const instrument = INSTRUMENTS[(lot + scan) % 2];
+      const instrument = REFERENCE_INSTRUMENTS[(lot + scan) % 2];
       const lotSeed = `${material.itemCode} reference lot ${lot}`;
       const spectrum = synthesise(material.bands, instrument, {
         lotSeed,

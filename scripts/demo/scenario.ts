@@ -118,7 +118,7 @@ export const INSTRUMENTS: readonly (DemoInstrument & { readonly location: string
     toCm1: 2050,
     points: 1024,
     resolutionCm1: 6.6,
-    shiftCm1: -0.5,
+    shiftCm1: -2.1,
     scale: 0.0003,
     readNoise: 15,
     location: 'Receiving dock B, station 2'
@@ -134,12 +134,18 @@ export const INSTRUMENTS: readonly (DemoInstrument & { readonly location: string
     shiftCm1: 0.2,
     scale: 0,
     readNoise: 30,
+    fluorescenceFactor: 0.15,
     location: 'QC laboratory'
   }
 ];
 
-/** RM-2 creeps towards its limit: shift of its axis at each of its past checks, cm-1. */
-export const DRIFT_CM1 = [0.1, -0.05, -0.15, -0.3, -0.4, -0.5];
+/** RM-2 creeps towards its limit: shift of its axis at each of its past checks, cm-1. The last is what it has now. */
+export const DRIFT_CM1 = [-0.3, -0.6, -0.9, -1.3, -1.7, -2.1];
+
+/** The instruments that references are made on, as they were when they were newly qualified. */
+export const REFERENCE_INSTRUMENTS = INSTRUMENTS.slice(0, 2).map((instrument) =>
+  instrument.name === 'RM-2' ? { ...instrument, shiftCm1: DRIFT_CM1[0] } : instrument
+);
 
 export interface DemoScan {
   readonly container: number;

@@ -29,6 +29,8 @@ export interface DemoInstrument {
   readonly shiftCm1: number;
   readonly scale: number;
   readonly readNoise: number;
+  /** How strongly samples fluoresce at its excitation, next to 785 nm; 1 when absent. */
+  readonly fluorescenceFactor?: number;
 }
 
 export interface SynthesisOptions {
@@ -84,7 +86,8 @@ export function synthesise(
   const own = bands.map((band) => varied(band, lot, scan, 1 - linerShare));
   const around = liner.map((band) => varied(band, lot, scan, linerShare));
   const truth = trueAxis(instrument);
-  const level = fluorescence * (0.8 + 0.4 * lot()) * (0.9 + 0.2 * scan());
+  const fluorescing = fluorescence * (instrument.fluorescenceFactor ?? 1);
+  const level = fluorescing * (0.8 + 0.4 * lot()) * (0.9 + 0.2 * scan());
   const bend = 0.15 * (lot() - 0.5);
   const intensity = truth.map((x) => {
     const u = (x - instrument.fromCm1) / (instrument.toCm1 - instrument.fromCm1);
@@ -119,7 +122,7 @@ function trueAxis(instrument: DemoInstrument): Float64Array {
 }
 
 /** Sum of the bands at a shift, each a pseudo-Voigt of the natural and the instrument's width. */
-function bandsAt(bands: readonly DemoBand[], x: number, instrument: DemoInstrument): number {
+export function bandsAt(bands: readonly DemoBand[], x: number, instrument: DemoInstrument): number {
   let sum = 0;
   for (const band of bands) {
     const lorentz = band.fwhmCm1;
@@ -161,10 +164,19 @@ export function toJcampDx(spectrum: DemoSpectrum, instrument: DemoInstrument, ti
     '##DATA TYPE= RAMAN SPECTRUM',
     '##ORIGIN= DEMO',
     '##OWNER= DEMO',
+    `##SPECTROMETER/DATA SYSTEM= DEMO ${instrument.name}`,
+    `##RESOLUTION= ${instrument.resolutionCm1}`,
+    `##$LASER WAVELENGTH= ${instrument.excitationNm} nm`,
+    `##$SERIAL NUMBER= ${instrument.serial}`,
+    '##$INTEGRATION TIME= 2000 ms',
+    '##$ACCUMULATIONS= 1',
     '##XUNITS= 1/CM',
     '##YUNITS= COUNTS',
-    `##RAMAN EXCITATION= ${instrument.excitationNm}`,
-    `##SERIAL NUMBER= ${instrument.serial}`,
+    '##XFACTOR= 1',
+    '##YFACTOR= 1',
+    `##FIRSTX= ${x[0].toFixed(3)}`,
+    `##LASTX= ${x[x.length - 1].toFixed(3)}`,
+    `##FIRSTY= ${y[0]}`,
     `##NPOINTS= ${x.length}`,
     '##XYPOINTS= (XY..XY)',
     ...points,
