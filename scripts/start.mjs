@@ -135,7 +135,8 @@ async function catchMail(data) {
 }
 
 /**
- * Migrates as the owner and fills in the demo data. Only these two are told the owner's address.
+ * Migrates as the owner and fills in the demo data; without the demo, looks after the first two people. Only the
+ * first two are told the owner's address.
  * @param {NodeJS.ProcessEnv} env @param {string} ownerUrl @param {string} appPassword @param {boolean} demo
  */
 async function prepareDatabase(env, ownerUrl, appPassword, demo) {
@@ -146,7 +147,15 @@ async function prepareDatabase(env, ownerUrl, appPassword, demo) {
     { root: ROOT, env: asOwner, signal },
     'The database could not be brought up to date.'
   );
-  if (!demo) return;
+  if (!demo) {
+    const said = await runScript(
+      'scripts/firstAdministrator.ts',
+      { root: ROOT, env, signal },
+      'The first accounts could not be made.'
+    );
+    if (said.trim() !== '') say(`\n${said.trim()}`);
+    return;
+  }
   // The seed itself looks whether the database is empty.
   if (!existsSync(/** @type {string} */ (env.DEMO_ACCOUNTS_FILE))) say('Making the demo plant …');
   await runScript(
