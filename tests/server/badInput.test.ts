@@ -90,7 +90,7 @@ describe('R-059, R-086: a file that is no spectrum is refused in plain words, ke
     [
       'a web page named as text',
       () => textFile('scan.csv', '<!doctype html><html><body><p>Sign in</p></body></html>'),
-      /no two columns of numbers/
+      /web page/
     ]
   ];
   test.each(cases)('%s', async (_name, file, words) => {
