@@ -1,7 +1,7 @@
 /**
  * How well identity holds on a folder of labelled spectra: builds each material's method as the product suggests it,
  * leaving one source out at a time, and decides every spectrum left out under its own and every other material.
- *   npm run evaluate -- FOLDER [--flat] [--check polystyrene] [--same A=B] [--json FILE]
+ *   npm run evaluate -- FOLDER [--flat] [--check polystyrene] [--same A=B] [--liner] [--json FILE]
  *   npm run evaluate -- --train FOLDER --test FOLDER
  */
 import { writeFileSync } from 'node:fs';
@@ -22,6 +22,7 @@ const FLAGS = [
     about: "correct each source's axis from its own spectrum of this standard"
   },
   { name: 'same', takes: 'A=B', about: 'two names of one substance: B counts as A' },
+  { name: 'liner', about: 'samples were scanned through a liner: C-H stretching bands do not count' },
   { name: 'train', takes: 'FOLDER', about: 'build methods from this folder (with --test)' },
   { name: 'test', takes: 'FOLDER', about: 'decide the spectra of this folder' },
   { name: 'json', takes: 'FILE', about: 'write figures and every trial to this file' },
@@ -48,7 +49,10 @@ function main(words: readonly string[]): void {
   const all = [...trained.files, ...(tested?.files ?? [])];
   const corrections = typeof flags.check === 'string' ? axisCorrections(all, flags.check) : undefined;
   for (const reason of [...trained.unread, ...(tested?.unread ?? [])]) console.log(`passed over   ${reason}`);
-  const trials = runTrials(folds, { corrections });
+  const trials = runTrials(folds, {
+    corrections,
+    bare: flags.liner !== true
+  });
   const figures = figuresOf(trials);
   for (const line of reportLines(figures)) console.log(line);
   if (typeof flags.json === 'string')

@@ -21,9 +21,11 @@ export interface Figures {
   readonly failedOwn: Rate | null;
   /** Other material not passed. */
   readonly refusedOther: Rate | null;
-  /** Own material has the highest correlation, of judged spectra and of all (no result counts against). */
+  /** Of all methods, the own material's has the highest lead: of judged spectra and of all (no result counts against). */
   readonly bestMatch: Rate | null;
   readonly bestMatchOfAll: Rate | null;
+  /** Under its own method no other material agrees better. */
+  readonly ownAhead: Rate | null;
   /** Equal error rate by lead over the best other material, and by correlation alone. */
   readonly equalErrorByLead: number | null;
   readonly equalErrorByCorrelation: number | null;
@@ -59,6 +61,7 @@ export function figuresOf(trials: readonly Trial[]): Figures {
     refusedOther: rate(other.length - count(other, 'pass'), other.length),
     bestMatch: rate(right.length, best.length),
     bestMatchOfAll: rate(right.length, own.length),
+    ownAhead: rate(judged.filter((trial) => trial.lead !== null && trial.lead > 0).length, judged.length),
     equalErrorByLead: equalError(trials, (trial) => trial.lead),
     equalErrorByCorrelation: equalError(trials, (trial) => trial.correlation),
     falseAccepts: other.filter((trial) => trial.verdict === 'pass'),
@@ -79,14 +82,14 @@ interface BestMatch {
   readonly bestMatch: string;
 }
 
-/** The material of highest correlation for each spectrum that was judged under its own material. */
+/** The material of highest lead for each spectrum that was judged under its own material. */
 function bestMatches(trials: readonly Trial[]): BestMatch[] {
   const byFile = new Map<string, Trial[]>();
   for (const trial of trials) byFile.set(trial.file, [...(byFile.get(trial.file) ?? []), trial]);
   return [...byFile.values()].flatMap((group) => {
-    const scored = group.filter((trial) => trial.correlation !== null);
+    const scored = group.filter((trial) => trial.lead !== null);
     if (!scored.some((trial) => trial.material === trial.claimed)) return [];
-    const best = scored.reduce((a, b) => (Number(b.correlation) > Number(a.correlation) ? b : a));
+    const best = scored.reduce((a, b) => (Number(b.lead) > Number(a.lead) ? b : a));
     return [{ material: best.material, bestMatch: best.claimed }];
   });
 }

@@ -8,13 +8,14 @@ export function reportLines(figures: Figures): string[] {
     row('  of those with a result', figures.passedOwnOfJudged),
     row('own material failed', figures.failedOwn),
     row('other material refused', figures.refusedOther),
-    row('own is best match', figures.bestMatch),
+    row('own is best of all methods', figures.bestMatch),
     row('  counting no result against', figures.bestMatchOfAll),
-    `${'equal error rate'.padEnd(30)} ${percent(figures.equalErrorByLead)} by lead, ${percent(figures.equalErrorByCorrelation)} by correlation alone`,
-    `${'time per decision'.padEnd(30)} ${figures.medianMilliseconds.toFixed(2)} ms (median)`
+    row('no other ahead under own method', figures.ownAhead),
+    `${'equal error rate'.padEnd(32)} ${percent(figures.equalErrorByLead)} by lead, ${percent(figures.equalErrorByCorrelation)} by correlation alone`,
+    `${'time per decision'.padEnd(32)} ${figures.medianMilliseconds.toFixed(2)} ms (median)`
   ];
   const gates = Object.entries(figures.noResult).map(([gate, count]) => `${gate} ${count}`);
-  if (gates.length > 0) lines.push(`${'no result'.padEnd(30)} ${gates.join(', ')}`);
+  if (gates.length > 0) lines.push(`${'no result'.padEnd(32)} ${gates.join(', ')}`);
   for (const trial of figures.falseAccepts)
     lines.push(`FALSE ACCEPT  ${trial.file} passed as ${trial.claimed} (r ${digits(trial.correlation)})`);
   for (const trial of figures.ownNotPassed)
@@ -27,9 +28,9 @@ export function reportLines(figures: Figures): string[] {
 }
 
 function row(name: string, rate: Rate | null): string {
-  if (rate === null) return `${name.padEnd(30)} none tried`;
+  if (rate === null) return `${name.padEnd(32)} none tried`;
   const { count, of, interval } = rate;
-  return `${name.padEnd(30)} ${percent(rate.rate)} (${count} of ${of}; 95 % interval ${percent(interval.low)} to ${percent(interval.high)})`;
+  return `${name.padEnd(32)} ${percent(rate.rate)} (${count} of ${of}; 95 % interval ${percent(interval.low)} to ${percent(interval.high)})`;
 }
 
 const percent = (share: number | null): string => (share === null ? 'none' : `${(100 * share).toFixed(1)} %`);

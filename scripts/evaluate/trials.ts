@@ -4,6 +4,7 @@ import { fitMethod } from '../../src/lib/identity/fitMethod';
 import { makeLibraryEntry } from '../../src/lib/identity/library';
 import type { AxisCorrection, FittedMethod, Library, LibraryEntry } from '../../src/lib/identity/method';
 import { suggestDefinition } from '../../src/lib/identity/suggest';
+import { STRETCHING_CM1 } from '../../src/lib/identity/suggestRecipe';
 import type { Fold } from './folds';
 import type { LabelledFile } from './spectraFolder';
 
@@ -27,6 +28,8 @@ export interface TrialOptions {
   readonly corrections?: ReadonlyMap<string, AxisCorrection>;
   /** Excitation that every file is taken to have, nm: files of open collections seldom state it. */
   readonly excitationNm?: number;
+  /** Samples lay bare before the probe (true by default). */
+  readonly bare?: boolean;
 }
 
 const EXCITATION_NM = 785;
@@ -38,7 +41,8 @@ interface Fitted {
 }
 
 /** Decides every held-out spectrum of every fold under every material's method. */
-export function runTrials(folds: readonly Fold[], options: TrialOptions = {}): Trial[] {
+export function runTrials(folds: readonly Fold[], given: TrialOptions = {}): Trial[] {
+  const options = { ...given, bare: (given.bare ?? true) && folds.every(reachStretching) };
   const fittedByFiles = new Map<string, Fitted>();
   return folds.flatMap((fold) => {
     const fitted = new Map<string, Fitted>();
@@ -57,11 +61,17 @@ export function runTrials(folds: readonly Fold[], options: TrialOptions = {}): T
   });
 }
 
+/** A range that some spectra lack would only turn those away. */
+function reachStretching({ train, held }: Fold): boolean {
+  const files = [...held, ...[...train.values()].flat()];
+  return files.every(({ spectrum }) => spectrum.shiftCm1[spectrum.shiftCm1.length - 1] > STRETCHING_CM1.from);
+}
+
 function fitMaterial(
   material: string,
   files: readonly LabelledFile[],
   name: string,
-  { corrections, excitationNm = EXCITATION_NM }: TrialOptions
+  { corrections, excitationNm = EXCITATION_NM, bare }: TrialOptions
 ): Fitted {
   const references = files.map(({ file, source, spectrum }) => ({
     id: file,
@@ -69,7 +79,7 @@ function fitMaterial(
     spectrum,
     axisCorrection: corrections?.get(source)
   }));
-  const outcome = fitMethod(suggestDefinition(references, excitationNm), references);
+  const outcome = fitMethod(suggestDefinition(references, excitationNm, { bare }), references);
   if (!outcome.ok) throw new Error(`${material}: ${outcome.reasons.join(' ')}`);
   const head = { materialId: material, itemCode: material, name: material };
   return {

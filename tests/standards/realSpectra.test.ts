@@ -19,8 +19,9 @@ import { readTwoColumns, sharedPath } from '../support/sharedData';
  * as the product suggests them. What was tuned on what: the default recipe was chosen on the polymers, solvents and
  * sugars (see `DEFAULT_RECIPE`); allowances for noise and for few lots were set on the demo's made spectra; laying a
  * scan over its reference and the search for an admixture were made with the calibration spectra and the sugars'
- * mixtures at hand, and the largest admixture let pass was lowered once so that a fifth of ribose is not. So none of these sets is an independent trial of the engine as a whole; every spectrum decided
- * here was left out of the method it was decided under, but for the sugars and the liner, of which there is one
+ * mixtures at hand, and the largest admixture let pass was lowered once so that a fifth of ribose is not; that bare
+ * samples are compared up to 3200 cm-1, and that no agreement below 0.9 passes, was settled on the polymers. So none of
+ * these sets is an independent trial of the engine as a whole; every spectrum decided here was left out of the method it was decided under, but for the sugars and the liner, of which there is one
  * measurement each, references being that one with fresh noise.
  */
 const folder = (name: string): string | null => sharedPath(`spectra/${name}`);
@@ -86,18 +87,15 @@ describe('neat solvents', () => {
 describe('polymers after weeks in fresh water, under methods from clean ones or the reverse', () => {
   const path = folder('polymers');
   it.skipIf(path === null)(
-    'the best match is right four times in five, and a stranger passes less than once in two hundred',
+    'the best match is right nine times in ten, the equal error rate below six in a hundred, and no stranger passes',
     () => {
       const { files } = readSpectraFolder(path as string);
       expect(files).toHaveLength(75);
       const figures = evaluated(files);
-      expect(figures.bestMatchOfAll?.rate).toBeGreaterThan(0.8);
-      expect(figures.equalErrorByLead).toBeLessThan(0.09);
-      expect(figures.refusedOther?.rate).toBeGreaterThan(0.995);
-      // What does pass is a copolymer of styrene under another: they share most of their bands.
-      const styrenes = ['ABS', 'PS', 'SAN'];
-      for (const { material, claimed } of figures.falseAccepts)
-        expect([styrenes.includes(material), styrenes.includes(claimed)]).toEqual([true, true]);
+      // 69 of 75; four of the six others are SAN, of whose weathered spectra three are much more like ABS.
+      expect(figures.bestMatchOfAll?.rate).toBeGreaterThan(0.9);
+      expect(figures.equalErrorByLead).toBeLessThan(0.06);
+      expect(figures.falseAccepts).toEqual([]);
     },
     120_000
   );

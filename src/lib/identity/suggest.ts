@@ -10,17 +10,27 @@ const MOST_COMPONENTS = 6;
 
 /** A scan of this signal-to-noise ratio should not miss the correlation limit for its noise alone. */
 const FAINT_BUT_FAIR = 25;
-const LEAST_CORRELATION = 0.8;
+/** Below this an agreement proves nothing; references that agree less with each other are no set of references. */
+const LEAST_CORRELATION = 0.9;
+
+export interface SuggestOptions {
+  /** Scanned without liner or bag between: bands that a liner would cover may count. False by default. */
+  readonly bare?: boolean;
+}
 
 /** A definition that suits ordinary powders and these references; a method owner starts from it. */
 export function suggestDefinition(
   references: readonly LabelledReference[],
-  excitationNm: number
+  excitationNm: number,
+  { bare = false }: SuggestOptions = {}
 ): MethodDefinition {
   const draft: MethodDefinition = {
     excitationNm,
     excitationToleranceNm: 1,
-    recipe: suggestRecipe(references.map((reference) => reference.spectrum)),
+    recipe: suggestRecipe(
+      references.map((reference) => reference.spectrum),
+      bare
+    ),
     criteria: {
       minCorrelation: 0.9,
       guardBand: 0.02,

@@ -4,7 +4,7 @@ import type { LabelledReference, MethodDefinition } from './method';
 
 /**
  * Criteria that suit these references: the correlation limit lies below the worst agreement among them by three
- * times their usual disagreement, within 0.80 and 0.95. Above that a scan with a little more noise than the references
+ * times their usual disagreement, within 0.90 and 0.95. Above that a scan with a little more noise than the references
  * would fail for its noise alone, while what other materials share with this one is far below.
  */
 export function suggestMinCorrelation(
@@ -22,5 +22,5 @@ export function suggestMinCorrelation(
   });
   const worst = Math.min(...agreements);
   const usual = agreements.reduce((sum, value) => sum + value, 0) / agreements.length;
-  return Math.min(0.95, Math.max(0.8, worst - 3 * (1 - usual)));
+  return Math.min(0.95, Math.max(0.9, worst - 3 * (1 - usual)));
 }
