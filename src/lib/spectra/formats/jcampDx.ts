@@ -4,7 +4,7 @@ import { excitationOf, finishAxis } from './finishAxis';
 import type { ReadOptions, ReadOutcome, ReadProblem, SpectrumFormat } from './format';
 import { chooseBlock, type ChosenBlock } from './jcampBlocks';
 import { headerOf, type JcampHeader } from './jcampHeader';
-import { blocksOf, labelledRecords, problemAt, recordOf } from './jcampLabels';
+import { blocksOf, labelledRecords, problemAt } from './jcampLabels';
 import { pointsOf, type DataForm } from './jcampPoints';
 import { jcampNotes } from './jcampNotes';
 import { StatedFields } from './statedFields';
