@@ -20,6 +20,7 @@ import {
 import type { Act } from '../../src/lib/server/platform/act';
 import { loadLabelledReferences } from '../../src/lib/server/queries/references';
 import { makePeople } from './makePeople';
+import { textFile } from './drumFile';
 import { must } from './must';
 import { readLiner, readMaterials, readPolystyrene, type DemoMaterial } from './materials';
 import {
@@ -137,12 +138,6 @@ async function makeInstruments(
   return ids;
 }
 
-export const textFile = (fileName: string, text: string) => ({
-  fileName,
-  mediaType: 'text/plain',
-  bytes: new TextEncoder().encode(text)
-});
-
 async function makeMaterial(db: Database, plant: Plant, material: DemoMaterial): Promise<string> {
   const { state: _state, bands: _bands, fluorescence: _fluorescence, flags, ...fields } = material;
   const created = must(
@@ -174,6 +169,14 @@ async function makeMaterial(db: Database, plant: Plant, material: DemoMaterial):
       'A challenge with a third lot failed under version 1: two more lots added to the references'
     );
   } else await makeMethod(db, plant, created.id, referenceIds, 'First version');
+  if (material.itemCode === 'IBU')
+    await submitMethod(
+      db,
+      plant,
+      created.id,
+      referenceIds.slice(SCANS_PER_LOT),
+      'Lot R1 is used up: built without it'
+    );
   return created.id;
 }
 
@@ -234,6 +237,24 @@ async function makeMethod(
   referenceIds: string[],
   changeReason: string
 ): Promise<void> {
+  const versionId = await submitMethod(db, plant, materialId, referenceIds, changeReason);
+  must(
+    await approveMethodVersion(db, plant.acts[APPROVER], {
+      versionId,
+      password: plant.passwords[APPROVER],
+      reason: 'References, limits and cautions reviewed'
+    })
+  );
+}
+
+/** A method version signed by its author, in review. */
+async function submitMethod(
+  db: Database,
+  plant: Plant,
+  materialId: string,
+  referenceIds: string[],
+  changeReason: string
+): Promise<string> {
   const definition = suggestDefinition(await loadLabelledReferences(db, referenceIds), 785);
   const owner = plant.acts[OWNER];
   const draft = must(
@@ -252,11 +273,5 @@ async function makeMethod(
       reason: changeReason
     })
   );
-  must(
-    await approveMethodVersion(db, plant.acts[APPROVER], {
-      versionId: draft.id,
-      password: plant.passwords[APPROVER],
-      reason: 'References, limits and cautions reviewed'
-    })
-  );
+  return draft.id;
 }

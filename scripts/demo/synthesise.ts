@@ -139,15 +139,28 @@ export function bandsAt(bands: readonly DemoBand[], x: number, instrument: DemoI
 
 const MARK = 'DEMO: invented data, synthesised from published band positions';
 
+/** How a spectrum was measured: frames of a time each, added up. */
+export interface DemoExposure {
+  readonly integrationTimeMs: number;
+  readonly accumulations: number;
+}
+
+const ONE_FRAME: DemoExposure = { integrationTimeMs: 2000, accumulations: 1 };
+
 /** The spectrum as comma-delimited text with metadata lines. */
-export function toDelimitedText(spectrum: DemoSpectrum, instrument: DemoInstrument, title: string): string {
+export function toDelimitedText(
+  spectrum: DemoSpectrum,
+  instrument: DemoInstrument,
+  title: string,
+  exposure: DemoExposure = ONE_FRAME
+): string {
   const lines = [
     `# ${MARK}`,
     `# Title: ${title}`,
     `# Laser wavelength: ${instrument.excitationNm} nm`,
     `# Serial number: ${instrument.serial}`,
-    `# Integration time (ms): 2000`,
-    `# Accumulations: 1`,
+    `# Integration time (ms): ${exposure.integrationTimeMs}`,
+    `# Accumulations: ${exposure.accumulations}`,
     'Raman shift (cm-1),Intensity'
   ];
   spectrum.shiftCm1.forEach((x, i) => lines.push(`${x.toFixed(3)},${spectrum.intensity[i]}`));
@@ -168,8 +181,8 @@ export function toJcampDx(spectrum: DemoSpectrum, instrument: DemoInstrument, ti
     `##RESOLUTION= ${instrument.resolutionCm1}`,
     `##$LASER WAVELENGTH= ${instrument.excitationNm} nm`,
     `##$SERIAL NUMBER= ${instrument.serial}`,
-    '##$INTEGRATION TIME= 2000 ms',
-    '##$ACCUMULATIONS= 1',
+    `##$INTEGRATION TIME= ${ONE_FRAME.integrationTimeMs} ms`,
+    `##$ACCUMULATIONS= ${ONE_FRAME.accumulations}`,
     '##XUNITS= 1/CM',
     '##YUNITS= COUNTS',
     '##XFACTOR= 1',

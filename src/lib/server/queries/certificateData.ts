@@ -3,6 +3,7 @@ import { evidenceOf } from '../../identity/evidence';
 import type { Decision } from '../../identity/decision';
 import type { CertificateAttempt, CertificateData, CertificatePlot } from '../../domain/certificate';
 import { ROLE_NAMES, type RoleId } from '../../domain/roles';
+import { stepTitle } from '../../domain/stepText';
 import type { Executor } from '../db/client';
 import { decisions, instruments, performanceChecks, scans, treeHeads } from '../db/schema';
 import { loadDecisionInputs } from './decisionInputs';
@@ -74,7 +75,7 @@ export async function getCertificateData(db: Executor, inputs: CertificateInputs
       code: version.method.code,
       version: version.version.version,
       bundleSha256: stored.sha256,
-      recipe: stored.fitted.definition.recipe.map((step) => step.name.replaceAll('-', ' ')),
+      recipe: stored.fitted.definition.recipe.map(stepTitle),
       referenceCount: stored.fitted.referenceCount,
       sourceCount: stored.fitted.sourceCount,
       engineVersion: stored.fitted.engineVersion

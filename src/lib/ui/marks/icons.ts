@@ -22,6 +22,8 @@ export const ICONS = {
   'arrow-left': 'M21 12H5M11 5l-7 7 7 7',
   'arrow-right': 'M3 12h16M13 5l7 7-7 7',
   tick: 'M4 13l5 5L20 6',
+  // A lozenge: a triangle would read as the verdict "cannot tell".
+  caution: 'M12 1.5 22.5 12 12 22.5 1.5 12zM12 6.5v7M12 15.5v2.5',
   stop: 'M8 3h8l5 5v8l-5 5H8l-5-5V8zM8 12h8',
   aside: 'M3 4h10v16H3zM16 8v8M16 12h6M19 9l3 3-3 3',
   menu: 'M3 6h18M3 12h18M3 18h18',
